@@ -1,0 +1,5 @@
+//! What can be said of readings before any test: pairs, ranks, ties, runs, seasons.
+
+pub mod pairs;
+
+pub use pairs::{Pairing, Pairings};

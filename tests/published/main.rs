@@ -1,0 +1,10 @@
+//! Every method against published worked examples and reference values made outside Risefall.
+//!
+//! The files under `reference/` hold one JSON object a method: `published` (worked examples as printed, with their
+//! source, and what an independent computation gives) and `oracle` (values by enumeration, high-precision arithmetic,
+//! SciPy, statsmodels and R's base `stats`; `made_by` says which). `datasets.json` holds open series that they name,
+//! `tables.json` critical values and tail tables, each verified by enumeration.
+
+mod cox_stuart;
+mod family;
+mod reference;
