@@ -1,10 +1,10 @@
 """Makes binomial_tails.rs: binomial tails with mpmath at 60 digits, exact intervals with SciPy."""
-from mpmath import mp, mpf, binomial, nstr
+from mpmath import mp, mpf, binomial
 from scipy.stats import binomtest
 mp.dps = 60
 cases = [(7, 7, 0.5), (9, 4, 0.5), (52, 40, 0.5), (52, 52, 0.5), (104, 70, 0.75), (500, 480, 0.5), (1000, 530, 0.5),
          (1000, 999, 0.5), (1000, 700, 0.75), (26000, 13400, 0.5), (26000, 14600, 0.5), (40, 3, 0.001953125), (60, 2, 0.9375)]
-fmt = lambda value: nstr(value, 20, min_fixed=0, max_fixed=0)
+fmt = lambda value: repr(float(value))
 print("// Made by binomial_tails.py with mpmath at 60 digits and SciPy; do not edit.")
 print(f"const REFERENCE_BINOMIAL: [(u64, u64, f64, f64, f64); {len(cases)}] = [")
 for n, k, share in cases:
