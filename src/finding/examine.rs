@@ -34,6 +34,24 @@ pub struct Adjusted {
 }
 
 impl Finding {
+    /// A finding that the test does not apply, for a reason that came up before the test was run.
+    pub fn declined(request: &Request, refusal: Refusal) -> Self {
+        Finding::new(request, Err(refusal))
+    }
+
+    fn new(request: &Request, result: Result<Outcome, Refusal>) -> Self {
+        let mut finding = Finding {
+            card: request.test.card(),
+            question: request.question.clone(),
+            wanted: request.wanted,
+            result,
+            adjusted: None,
+            conclusion: Conclusion { word: Word::Declined, sentence: String::new() },
+        };
+        finding.conclude();
+        finding
+    }
+
     /// The p-value that the conclusion rests on.
     pub fn deciding_p(&self) -> Option<f64> {
         self.adjusted.map(|adjusted| adjusted.p).or_else(|| self.result.as_ref().ok().map(|outcome| outcome.p.value))
@@ -57,24 +75,16 @@ impl Finding {
 
 /// Judges one series by itself.
 pub fn examine(series: &Series, request: &Request) -> Finding {
-    let mut finding = Finding {
-        card: request.test.card(),
-        question: request.question.clone(),
-        wanted: request.wanted,
-        result: request.test.judge(series, &request.question),
-        adjusted: None,
-        conclusion: Conclusion { word: Word::Declined, sentence: String::new() },
-    };
-    finding.conclude();
-    finding
+    Finding::new(request, request.test.judge(series, &request.question))
 }
 
 /// Adjusts findings for being judged together. Findings without a p-value do not count in the family.
-pub fn examine_together(findings: &mut [Finding], adjustment: Adjustment) {
-    let p: Vec<f64> = findings.iter().filter_map(|finding| finding.result.as_ref().ok().map(|outcome| outcome.p.value)).collect();
-    let mut adjusted = adjust(&p, adjustment).into_iter();
-    for finding in findings.iter_mut().filter(|finding| finding.result.is_ok()) {
-        finding.adjusted = adjusted.next().map(|value| Adjusted { p: value, family: p.len(), by: adjustment });
+pub fn examine_together<'a>(findings: impl IntoIterator<Item = &'a mut Finding>, adjustment: Adjustment) {
+    let mut judged: Vec<(f64, &mut Finding)> =
+        findings.into_iter().filter_map(|finding| Some((finding.result.as_ref().ok()?.p.value, finding))).collect();
+    let own: Vec<f64> = judged.iter().map(|(p, _)| *p).collect();
+    for ((_, finding), p) in judged.iter_mut().zip(adjust(&own, adjustment)) {
+        finding.adjusted = Some(Adjusted { p, family: own.len(), by: adjustment });
         finding.conclude();
     }
 }

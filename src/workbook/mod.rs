@@ -6,6 +6,7 @@
 //! - [`annotate`] is the way through the three.
 
 pub mod indicator;
+pub mod judge;
 pub mod plan;
 pub mod reference;
 
