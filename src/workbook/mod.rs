@@ -9,6 +9,7 @@ pub mod indicator;
 pub mod judge;
 pub mod plan;
 pub mod reference;
+pub mod settings;
 
 pub use indicator::{Indicator, Judged};
 pub use plan::{Plan, PlanRow};
