@@ -5,6 +5,7 @@
 //! - [`graft`] moves them into the user's package; the only user of zip and XML events.
 //! - [`annotate`] is the way through the three.
 
+pub mod graft;
 pub mod indicator;
 pub mod judge;
 pub mod plan;
