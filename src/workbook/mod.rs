@@ -11,6 +11,7 @@ pub mod judge;
 pub mod plan;
 pub mod reference;
 pub mod settings;
+pub mod survey;
 
 pub use indicator::{Indicator, Judged};
 pub use plan::{Plan, PlanRow};

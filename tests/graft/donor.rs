@@ -1,7 +1,8 @@
 //! A rich workbook of new sheets for the tests.
 
 use rust_xlsxwriter::{
-    Chart, ChartType, Color, ConditionalFormatCell, ConditionalFormatCellRule, DataValidation, Format, Formula, Sparkline, Workbook,
+    Chart, ChartType, Color, ConditionalFormatCell, ConditionalFormatCellRule, DataValidation, Format, Formula, Sparkline,
+    Workbook,
 };
 
 /// The sheets that the donor offers; all others are placeholders.

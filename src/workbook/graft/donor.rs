@@ -43,11 +43,13 @@ impl<'a> Donor<'a> {
         let workbook = "xl/workbook.xml".to_owned();
         let (_, root) = package.xml(&workbook).map_err(ours)?;
         let relationships = package.relationships(&workbook).map_err(ours)?;
-        let target = |id: &str| relationships.iter().find(|relationship| relationship.id == id).and_then(|found| found.part.clone());
+        let target =
+            |id: &str| relationships.iter().find(|relationship| relationship.id == id).and_then(|found| found.part.clone());
         let mut sheets = Vec::new();
         for sheet in root.child("sheets").into_iter().flat_map(|sheets| &sheets.children) {
             let name = sheet.attribute("name").unwrap_or_default().to_owned();
-            let part = sheet.prefixed_attribute("id").and_then(target).ok_or_else(|| ours(format!("the sheet {name} has no part")))?;
+            let part =
+                sheet.prefixed_attribute("id").and_then(target).ok_or_else(|| ours(format!("the sheet {name} has no part")))?;
             sheets.push((name, part));
         }
         let names = root.child("definedNames").into_iter().flat_map(|names| &names.children).filter_map(|name| {
@@ -150,7 +152,14 @@ impl<'a> Donor<'a> {
     }
 
     /// Writes a start tag with its format numbers moved; tells whether it opens a cell that holds a shared string.
-    fn write_tag(&self, new: &mut String, name: &str, tag: &BytesStart<'_>, empty: bool, numbers: &StyleNumbers) -> Result<bool, Error> {
+    fn write_tag(
+        &self,
+        new: &mut String,
+        name: &str,
+        tag: &BytesStart<'_>,
+        empty: bool,
+        numbers: &StyleNumbers,
+    ) -> Result<bool, Error> {
         let moved = |to: &[u32], value: &str| {
             let found = value.parse::<usize>().ok().and_then(|old| to.get(old));
             found.map(u32::to_string).ok_or_else(|| ours(format!("there is no format {value}")))

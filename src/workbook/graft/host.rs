@@ -10,8 +10,10 @@ use super::tree::{Edits, Element, PartText, escape, qualified};
 pub const TRANSITIONAL: &str = "http://schemas.openxmlformats.org/spreadsheetml/2006/main";
 /// The main namespace of the strict variant.
 pub const STRICT: &str = "http://purl.oclc.org/ooxml/spreadsheetml/main";
-const RELATIONSHIPS: [&str; 2] =
-    ["http://schemas.openxmlformats.org/officeDocument/2006/relationships", "http://purl.oclc.org/ooxml/officeDocument/relationships"];
+const RELATIONSHIPS: [&str; 2] = [
+    "http://schemas.openxmlformats.org/officeDocument/2006/relationships",
+    "http://purl.oclc.org/ooxml/officeDocument/relationships",
+];
 
 /// The hidden name by which our sheets are known again after an office program has saved the workbook.
 pub const MARKER: &str = "_risefall_sheet";
@@ -62,7 +64,8 @@ impl Host {
             return Err(Error::OtherKind("a workbook of a form older than the standard"));
         }
         let relationships = package.relationships(&part)?;
-        let target = |id: &str| relationships.iter().find(|relationship| relationship.id == id).and_then(|found| found.part.clone());
+        let target =
+            |id: &str| relationships.iter().find(|relationship| relationship.id == id).and_then(|found| found.part.clone());
         let marked: Vec<u32> = names(&root)
             .filter(|name| name.attribute("name").is_some_and(|name| name.eq_ignore_ascii_case(MARKER)))
             .filter_map(|name| name.number("localSheetId"))
@@ -103,15 +106,15 @@ impl Host {
         let prefix = &self.root.prefix;
         let listed = self.root.child("sheets");
         let known = listed.map(|sheets| sheets.children.as_slice()).unwrap_or_default();
-        let mut next_id = known.iter().filter_map(|sheet| sheet.number("sheetId")).max().unwrap_or(0) + 1;
+        let first_id = known.iter().filter_map(|sheet| sheet.number("sheetId")).max().unwrap_or(0) + 1;
         let mut sheets = String::new();
         let mut defined = String::new();
         let namespace = RELATIONSHIPS[usize::from(self.is_strict())];
         for (place, sheet) in added.iter().enumerate() {
+            let sheet_id = first_id as usize + place;
             let tag = qualified(prefix, "sheet");
             let (name, id) = (escape(&sheet.name), &sheet.relationship);
-            sheets.push_str(&format!("<{tag} name=\"{name}\" sheetId=\"{next_id}\" r:id=\"{id}\" xmlns:r=\"{namespace}\"/>"));
-            next_id += 1;
+            sheets.push_str(&format!("<{tag} name=\"{name}\" sheetId=\"{sheet_id}\" r:id=\"{id}\" xmlns:r=\"{namespace}\"/>"));
             for name in &sheet.names {
                 let tag = qualified(prefix, "definedName");
                 let hidden = if name.hidden { " hidden=\"1\"" } else { "" };

@@ -35,7 +35,10 @@ use tree::{Edits, PartText, escape};
 const TYPES: &str = "[Content_Types].xml";
 /// The first segments of relationship types and namespaces, transitional and strict.
 const VARIANTS: [(&str, &str); 3] = [
-    ("http://schemas.openxmlformats.org/officeDocument/2006/relationships", "http://purl.oclc.org/ooxml/officeDocument/relationships"),
+    (
+        "http://schemas.openxmlformats.org/officeDocument/2006/relationships",
+        "http://purl.oclc.org/ooxml/officeDocument/relationships",
+    ),
     ("http://schemas.openxmlformats.org/spreadsheetml/2006/main", "http://purl.oclc.org/ooxml/spreadsheetml/main"),
     ("http://schemas.openxmlformats.org/drawingml/2006/", "http://purl.oclc.org/ooxml/drawingml/"),
 ];
@@ -130,23 +133,26 @@ impl<R: Read + Seek> Workbook<R> {
         };
 
         // Styles: appended to the user's, or a part of our own where there is none.
+        let mut new_styles = donor.styles()?;
+        if self.host.is_strict() {
+            styles::to_strict(&mut new_styles);
+        }
         let styles_part = self.host.related("styles").filter(|part| self.package.has(part));
-        let numbers = match &styles_part {
+        let (numbers, own_styles) = match &styles_part {
             Some(part) => {
                 originals.push(undo::Original::read(&mut self.package, part)?);
                 let (text, root) = self.package.xml(part)?;
-                let (merged, numbers) = styles::merge(&text.text, &root, &donor.styles()?);
+                let (merged, numbers) = styles::merge(&text.text, &root, &new_styles);
                 self.package.replace(part, text.encode(&merged));
                 (numbers, None)
             }
             None => {
                 let bare = styles::empty(&self.host.root.namespace);
                 let root = tree::parse(&bare).map_err(|error| Error::Donor(error.to_string()))?;
-                let (merged, numbers) = styles::merge(&bare, &root, &donor.styles()?);
+                let (merged, numbers) = styles::merge(&bare, &root, &new_styles);
                 (numbers, Some(merged))
             }
         };
-        let (numbers, own_styles) = numbers;
         let mut written: Vec<(String, Vec<u8>)> = Vec::new();
         if let Some(text) = own_styles {
             let part = free(&base, "styles.xml", &mut taken);
@@ -171,7 +177,11 @@ impl<R: Read + Seek> Workbook<R> {
                 let kind = donor.package.content_type(part)?.unwrap_or_default();
                 new_types.push((moves[part].clone(), kind));
                 if let Some(text) = self.moved_relationships(&mut donor, part, &moves)? {
-                    written.push((relationships_part(&moves[part]), text.into_bytes()));
+                    let links = relationships_part(&moves[part]);
+                    if package::content_type_in(&types, &links).is_none() {
+                        new_types.push((links.clone(), "application/vnd.openxmlformats-package.relationships+xml".into()));
+                    }
+                    written.push((links, text.into_bytes()));
                 }
             }
             let relationship = relate(self.kind("worksheet"), &moves[&sheet]);
@@ -190,24 +200,16 @@ impl<R: Read + Seek> Workbook<R> {
         let workbook = self.host.with_sheets(&added);
         self.package.replace(&self.host.part.clone(), self.host.text.encode(&workbook));
         let links = relationships_part(&self.host.part);
-        let links_text = if self.package.has(&links) {
-            originals.push(undo::Original::read(&mut self.package, &links)?);
-            let (text, root) = self.package.xml(&links)?;
-            let mut edits = Edits::default();
-            let tag = tree::qualified(&root.prefix, "Relationship");
-            let listed = new_relationships.iter().map(|(id, kind, target)| {
-                format!("<{tag} Id=\"{id}\" Type=\"{kind}\" Target=\"{}\"/>", escape(&relative(&self.host.part, target)))
-            });
-            edits.append(&root, &listed.collect::<String>());
-            let bytes = text.encode(&edits.apply(&text.text));
-            self.package.replace(&links, bytes);
-            true
-        } else {
-            false
-        };
-        if !links_text {
-            return Err(Error::Damaged(format!("the part {links} is missing")));
-        }
+        originals.push(undo::Original::read(&mut self.package, &links)?);
+        let (text, root) = self.package.xml(&links)?;
+        let mut edits = Edits::default();
+        let tag = tree::qualified(&root.prefix, "Relationship");
+        let listed = new_relationships.iter().map(|(id, kind, target)| {
+            format!("<{tag} Id=\"{id}\" Type=\"{kind}\" Target=\"{}\"/>", escape(&relative(&self.host.part, target)))
+        });
+        edits.append(&root, &listed.collect::<String>());
+        let bytes = text.encode(&edits.apply(&text.text));
+        self.package.replace(&links, bytes);
         let typed = with_types(&types_text, &types, &new_types);
         self.package.replace(TYPES, typed);
 
@@ -241,7 +243,12 @@ impl<R: Read + Seek> Workbook<R> {
     }
 
     /// The relationships of a donor's part, leading to the new names.
-    fn moved_relationships(&self, donor: &mut Donor, part: &str, moves: &HashMap<String, String>) -> Result<Option<String>, Error> {
+    fn moved_relationships(
+        &self,
+        donor: &mut Donor,
+        part: &str,
+        moves: &HashMap<String, String>,
+    ) -> Result<Option<String>, Error> {
         let Some((root, listed)) = donor.relationships(part)? else { return Ok(None) };
         let mut text = String::from("<?xml version=\"1.0\" encoding=\"UTF-8\" standalone=\"yes\"?>\n");
         text.push_str("<Relationships xmlns=\"http://schemas.openxmlformats.org/package/2006/relationships\">");
@@ -264,8 +271,19 @@ impl<R: Read + Seek> Workbook<R> {
 
 const SPREADSHEET_TYPE: &str = "application/vnd.openxmlformats-officedocument.spreadsheetml.";
 
+/// A text in the strict variant: other namespaces, and percentages written with their sign.
 fn strict(text: &str) -> String {
-    VARIANTS.iter().fold(text.to_owned(), |text, (transitional, strict)| text.replace(transitional, strict))
+    let mut text = VARIANTS.iter().fold(text.to_owned(), |text, (transitional, strict)| text.replace(transitional, strict));
+    for element in ["<c:lblOffset val=\"", "<c:gapWidth val=\"", "<c:overlap val=\""] {
+        let mut from = 0;
+        while let Some(at) = text[from..].find(element) {
+            from += at + element.len();
+            if let Some(quote) = text[from..].find('"') {
+                text.insert(from + quote, '%');
+            }
+        }
+    }
+    text
 }
 
 /// The content types with an entry for each new part.

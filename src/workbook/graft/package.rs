@@ -67,7 +67,11 @@ impl<R: Read + Seek> Package<R> {
             let (size, packed) = (file.size(), file.compressed_size());
             unpacked = unpacked.saturating_add(size);
             if size > limits.ratio_from && size / packed.max(1) > limits.ratio {
-                return Err(Error::TooLarge { what: "ratio of a part unpacked to packed", have: size / packed.max(1), most: limits.ratio });
+                return Err(Error::TooLarge {
+                    what: "ratio of a part unpacked to packed",
+                    have: size / packed.max(1),
+                    most: limits.ratio,
+                });
             }
             if let Some(start) = file.data_start() {
                 places.push((start, start + packed));
@@ -302,12 +306,12 @@ pub fn relationships_of(root: &Element, part: &str) -> Vec<Relationship> {
 
 /// The content type of a part by its own entry, else by its extension.
 pub fn content_type_in(root: &Element, part: &str) -> Option<String> {
-    let own = root.children.iter().filter(|child| child.local == "Override");
-    let found = own.filter(|child| key(child.attribute("PartName").unwrap_or_default()) == key(part)).last();
+    let mut own = root.children.iter().filter(|child| child.local == "Override");
+    let found = own.rfind(|child| key(child.attribute("PartName").unwrap_or_default()) == key(part));
     let extension = part.rsplit('.').next().unwrap_or_default();
     let usual = || {
-        let defaults = root.children.iter().filter(|child| child.local == "Default");
-        defaults.filter(|child| child.attribute("Extension").is_some_and(|ext| ext.eq_ignore_ascii_case(extension))).last()
+        let mut defaults = root.children.iter().filter(|child| child.local == "Default");
+        defaults.rfind(|child| child.attribute("Extension").is_some_and(|ext| ext.eq_ignore_ascii_case(extension)))
     };
     found.or_else(usual)?.attribute("ContentType").map(str::to_owned)
 }

@@ -39,6 +39,23 @@ pub fn empty(namespace: &str) -> String {
     format!("<?xml version=\"1.0\" encoding=\"UTF-8\" standalone=\"yes\"?>\n<styleSheet xmlns=\"{namespace}\"></styleSheet>")
 }
 
+/// Turns the new sheets' styles into the strict variant of the standard, where borders have a start and an end.
+pub fn to_strict(styles: &mut Element) {
+    fn rename(element: &mut Element) {
+        for child in &mut element.children {
+            if element.local == "border" {
+                match child.local.as_str() {
+                    "left" => child.local = "start".into(),
+                    "right" => child.local = "end".into(),
+                    _ => {}
+                }
+            }
+            rename(child);
+        }
+    }
+    rename(styles);
+}
+
 /// One list of the user's styles while entries are appended to it.
 struct Growing {
     known: HashMap<String, u32>,
@@ -243,7 +260,9 @@ mod tests {
 
     #[test]
     fn a_taken_number_format_is_moved() {
-        let (text, numbers) = merged(r#"<styleSheet xmlns="urn:m"><numFmts count="1"><numFmt numFmtId="164" formatCode="0.0"/></numFmts></styleSheet>"#);
+        let (text, numbers) = merged(
+            r#"<styleSheet xmlns="urn:m"><numFmts count="1"><numFmt numFmtId="164" formatCode="0.0"/></numFmts></styleSheet>"#,
+        );
         let root = parse(&text).unwrap();
         let format = &root.child("cellXfs").unwrap().children[numbers.cell_formats[1] as usize];
         assert_eq!(format.attribute("numFmtId"), Some("165"));

@@ -119,7 +119,10 @@ pub struct Attribute {
 impl Element {
     /// The value of an attribute without prefix.
     pub fn attribute(&self, local: &str) -> Option<&str> {
-        self.attributes.iter().find(|attribute| attribute.prefix.is_empty() && attribute.local == local).map(|attribute| attribute.value.as_str())
+        self.attributes
+            .iter()
+            .find(|attribute| attribute.prefix.is_empty() && attribute.local == local)
+            .map(|attribute| attribute.value.as_str())
     }
 
     /// An attribute without prefix as a number.
@@ -129,15 +132,13 @@ impl Element {
 
     /// The value of a prefixed attribute by its local name, whatever the prefix.
     pub fn prefixed_attribute(&self, local: &str) -> Option<&str> {
-        self.attributes.iter().find(|attribute| !attribute.prefix.is_empty() && attribute.local == local).map(|attribute| attribute.value.as_str())
+        self.attributes
+            .iter()
+            .find(|attribute| !attribute.prefix.is_empty() && attribute.local == local)
+            .map(|attribute| attribute.value.as_str())
     }
 
-    /// The children in this element's own namespace with a given name.
-    pub fn named<'a>(&'a self, local: &'a str) -> impl Iterator<Item = &'a Element> + 'a {
-        self.children.iter().filter(move |child| child.local == local && child.namespace == self.namespace)
-    }
-
-    /// The first of [`Element::named`].
+    /// The first child in this element's own namespace with a given name.
     pub fn child(&self, local: &str) -> Option<&Element> {
         self.children.iter().find(|child| child.local == local && child.namespace == self.namespace)
     }
@@ -240,8 +241,8 @@ fn element(tag: &BytesStart<'_>, text: &str, open: &[Element]) -> Result<Element
     }
     let name = tag.name();
     let (prefix, local) = split(name.as_ref());
-    let scopes = open.iter().flat_map(|element| &element.declared).chain(&declared);
-    let namespace = scopes.filter(|(declared, _)| declared == prefix).last().map(|(_, namespace)| namespace.clone());
+    let mut scopes = open.iter().flat_map(|element| &element.declared).chain(&declared);
+    let namespace = scopes.rfind(|(declared, _)| declared == prefix).map(|(_, namespace)| namespace.clone());
     Ok(Element {
         namespace: namespace.unwrap_or_default(),
         prefix: prefix.to_owned(),

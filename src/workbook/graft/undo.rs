@@ -116,7 +116,9 @@ pub fn take_out<R: Read + Seek>(package: &mut Package<R>, host: &Host) -> Result
     let theirs: Vec<String> = host.sheets.iter().filter(|sheet| !sheet.ours).filter_map(|sheet| sheet.part.clone()).collect();
     let kept = reach(package, &theirs, &host.part)?;
     for part in reach(package, &ours, &host.part)? {
-        if !kept.iter().any(|kept| key(kept) == key(&part)) && !host.relationships.iter().any(|link| link.part.as_deref() == Some(&part) && !link.is("worksheet")) {
+        if !kept.iter().any(|kept| key(kept) == key(&part))
+            && !host.relationships.iter().any(|link| link.part.as_deref() == Some(&part) && !link.is("worksheet"))
+        {
             gone.push(part);
         }
     }

@@ -1,0 +1,18 @@
+//! A workbook file turned into the indicators that a person would have marked.
+//!
+//! The file is read once into a compact store of cells ([`Cells`]); finding indicators, rows of a plan with stated
+//! references, and later questions all read from that store.
+
+mod cells;
+mod error;
+mod find;
+mod open;
+mod stated;
+mod table;
+mod words;
+
+pub use cells::Cells;
+pub use error::Error;
+pub use find::{Survey, survey};
+pub use open::{Format, format, read};
+pub use stated::indicator_at;
