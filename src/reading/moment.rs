@@ -118,6 +118,11 @@ impl Moments {
         self.count == 0
     }
 
+    /// Whether the moments were written as text, which their labels repeat.
+    pub fn has_labels(&self) -> bool {
+        !self.labels.is_empty()
+    }
+
     /// Where a reading stands on the time axis: days for dates, the number itself, or the position from 1.
     pub fn axis(&self, index: usize) -> f64 {
         self.axis.get(index).copied().unwrap_or(index as f64 + 1.0)

@@ -71,6 +71,14 @@ impl Place {
         self.moments.and_then(|column| self.span(column))
     }
 
+    /// In a long table, the smallest range that holds the indicator's name in each of its rows.
+    pub fn names_range(&self) -> Option<Range> {
+        match self.rows {
+            Rows::Listed(_) => self.span(self.header?.column),
+            _ => None,
+        }
+    }
+
     fn span(&self, column: u32) -> Option<Range> {
         let last = self.rows.len().checked_sub(1)?;
         let (a, b) = match &self.rows {
@@ -90,8 +98,19 @@ pub struct Indicator {
     pub understood: Understood,
     /// Where the readings stand.
     pub place: Place,
+    /// The readings whose cells hold text that was read as a number or a limit, as indices in order.
+    pub as_text: Vec<u32>,
     /// What was noticed while finding it, in whole sentences: reversed order, text numbers, totals left out.
     pub remarks: Vec<String>,
+}
+
+impl Indicator {
+    /// Stands in for an indicator whose row of the plan leads to no readings; the reason is its remark.
+    pub fn absent(row: &PlanRow, reason: String) -> Self {
+        let series = Series { name: row.indicator.clone(), ..Series::of_numbers(&[]) };
+        let place = Place { sheet: String::new(), column: 0, moments: None, rows: Rows::Listed(Vec::new()), header: None };
+        Indicator { series, understood: Understood::default(), place, as_text: Vec::new(), remarks: vec![reason] }
+    }
 }
 
 /// An indicator, the plan's row for it, and what was found.

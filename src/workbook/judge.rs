@@ -28,7 +28,7 @@ pub fn draft(indicator: &Indicator, defaults: &Arguments) -> PlanRow {
         indicator: indicator.series.name.clone(),
         cells: indicator.place.range().map(|range| range.to_string()).unwrap_or_default(),
         moments: indicator.place.moments_range().map(|range| range.to_string()).unwrap_or_default(),
-        names: String::new(),
+        names: indicator.place.names_range().map(|range| range.to_string()).unwrap_or_default(),
         grades,
         wanted: sent("wanted").unwrap_or_else(|| Aim::default().wanted.word().into()),
         seek: sent("seek").unwrap_or_else(|| question.seek.word().into()),
@@ -74,6 +74,11 @@ fn test(key: &str) -> Result<&'static Registered, RowError> {
     })
 }
 
+/// A test's own parameters as a row states them; the defaults where they cannot be read.
+pub fn own_parameters<P: Declared>(row: &PlanRow) -> P {
+    options(&row.options).ok().and_then(|arguments| P::read(&arguments).ok()).unwrap_or_default()
+}
+
 /// `name=value; name=value` as arguments.
 fn options(text: &str) -> Result<Arguments, RowError> {
     let pairs = text.split(';').map(str::trim).filter(|pair| !pair.is_empty());
@@ -117,6 +122,9 @@ fn usual_request() -> Request {
 fn unusable(indicator: &Indicator, request: &Request) -> Option<String> {
     let series = &indicator.series;
     let understood = &indicator.understood;
+    if let (true, Some(reason)) = (series.is_empty(), indicator.remarks.first()) {
+        return Some(format!("the row of the plan is wrong: {reason}"));
+    }
     let words = understood.missing.iter().filter(|reading| reading.why == Missing::NotUnderstood).count();
     if series.count_present() == 0 && words > 0 {
         return Some("the readings are words whose order is not stated; write the grades into the plan, lowest first, such as poor < fair < good".into());

@@ -5,11 +5,13 @@
 //! - [`graft`] moves them into the user's package; the only user of zip and XML events.
 //! - [`annotate`] is the way through the three.
 
+pub mod annotate;
 pub mod graft;
 pub mod indicator;
 pub mod judge;
 pub mod plan;
 pub mod reference;
+pub mod render;
 pub mod settings;
 pub mod survey;
 

@@ -136,7 +136,7 @@ fn find_wide(cells: &Cells, sheet: &SheetCells, table: &Table, survey: &mut Surv
         rows = Rows::Up { first: table.rows.1, count };
         moments = Ok(Arc::new(Moments::clone(read).reversed()));
     }
-    for (index, column) in table.columns.iter().enumerate().filter(|(index, _)| Some(*index) != table.moments) {
+    for (_, column) in table.columns.iter().enumerate().filter(|(index, _)| Some(*index) != table.moments) {
         let look = look(cells, sheet, column.column, table.rows);
         match left_out(&look, column, cells, sheet, table) {
             Some(why) => {
@@ -155,7 +155,6 @@ fn find_wide(cells: &Cells, sheet: &SheetCells, table: &Table, survey: &mut Surv
                 add(cells, sheet, place, name, unit, moments.clone(), survey);
             }
         }
-        let _ = index;
     }
 }
 
@@ -171,7 +170,7 @@ fn left_out(look: &Look, column: &Column, cells: &Cells, sheet: &SheetCells, tab
         return Some(Some("it has fewer than two readings".into()));
     }
     if look.numbers * 10 >= look.filled * 6 {
-        if words::is_label_heading(&column.heading) || counts_rows(cells, sheet, column, table) {
+        if words::is_label_heading(&column.heading) || counts_rows(sheet, column, table) {
             return Some(Some("it numbers or names the rows".into()));
         }
         return None;
@@ -189,8 +188,7 @@ fn left_out(look: &Look, column: &Column, cells: &Cells, sheet: &SheetCells, tab
 }
 
 /// A first column of 1, 2, 3, ... only counts the rows.
-fn counts_rows(cells: &Cells, sheet: &SheetCells, column: &Column, table: &Table) -> bool {
-    let _ = cells;
+fn counts_rows(sheet: &SheetCells, column: &Column, table: &Table) -> bool {
     let first = table.columns.first().is_some_and(|first| first.column == column.column);
     first
         && table.columns.len() > 1
@@ -235,7 +233,9 @@ pub fn indicator(
         remarks.push(format!("{why}."));
         Arc::new(Moments::positions(values.len()))
     });
-    Indicator { series: Series { name, unit, scale, values, moments, blocks: None }, understood, place, remarks }
+    let is_text = |index: usize| matches!(read[index], Cell::Text(_)) && scale == Scale::Numeric && !values[index].is_missing();
+    let as_text = (0..read.len()).filter(|&index| is_text(index)).map(|index| index as u32).collect();
+    Indicator { series: Series { name, unit, scale, values, moments, blocks: None }, understood, place, as_text, remarks }
 }
 
 /// Words whose order nobody stated: no reading has a value until the grades are given.
