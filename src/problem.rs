@@ -63,11 +63,11 @@ impl Problem {
 
 impl fmt::Display for Problem {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(f, "{}", self.message)?;
-        if let Some(help) = &self.help {
-            write!(f, " {help}")?;
+        let stop = if self.message.ends_with(['.', '!', '?']) { "" } else { "." };
+        match &self.help {
+            Some(help) => write!(f, "{}{stop} {help}", self.message),
+            None => f.write_str(&self.message),
         }
-        Ok(())
     }
 }
 

@@ -77,6 +77,16 @@ impl Arguments {
         self.0.push((name.into(), value));
     }
 
+    /// The names with their values, in the order they came.
+    pub fn into_pairs(self) -> impl Iterator<Item = (String, Argument)> {
+        self.0.into_iter()
+    }
+
+    /// The values in the order they came.
+    pub fn values(&self) -> impl Iterator<Item = &Argument> {
+        self.0.iter().map(|(_, value)| value)
+    }
+
     /// The names in the order they came.
     pub fn names(&self) -> impl Iterator<Item = &str> {
         self.0.iter().map(|(name, _)| name.as_str())

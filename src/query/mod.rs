@@ -1,5 +1,6 @@
-//! Requests as text and JSON, turned into valid requests.
+//! Requests as addresses, forms and JSON, turned into valid requests.
 
+pub mod address;
 pub mod json;
 pub mod request;
 
