@@ -64,7 +64,7 @@ impl Annotate {
         }
         let settings = Settings::read(&self.arguments()?)?;
         let mut bar = Bar::new(self.quiet);
-        let now = jiff::Zoned::now().datetime();
+        let now = jiff::ZonedDateTime::now().datetime();
         let annotated = annotate(&self.workbook, &output, &settings, now, &mut |step| bar.show(step));
         bar.finish();
         let annotated = annotated?;
@@ -76,7 +76,13 @@ impl Annotate {
 
     fn arguments(&self) -> Result<Arguments, Problem> {
         let mut arguments = Arguments::default();
-        let named = [("test", &self.test), ("seek", &self.seek), ("risk", &self.risk), ("wanted", &self.wanted), ("adjust", &self.adjust)];
+        let named = [
+            ("test", &self.test),
+            ("seek", &self.seek),
+            ("risk", &self.risk),
+            ("wanted", &self.wanted),
+            ("adjust", &self.adjust),
+        ];
         for (name, value) in named {
             if let Some(value) = value {
                 arguments.push(name, Argument::Text(value.clone()));
@@ -89,7 +95,11 @@ impl Annotate {
         }
         for pair in &self.set {
             let Some((name, value)) = pair.split_once('=') else {
-                return Err(Problem::new(ProblemKind::Malformed, "option", format!("--set {pair}: expected NAME=VALUE, such as ties=split")));
+                return Err(Problem::new(
+                    ProblemKind::Malformed,
+                    "option",
+                    format!("--set {pair}: expected NAME=VALUE, such as ties=split"),
+                ));
             };
             arguments.push(name.trim(), Argument::Text(value.trim().to_owned()));
         }
@@ -115,7 +125,13 @@ fn summary(annotated: &Annotated, output: &Path) -> String {
         .map(|row| {
             let attention = if row.needs_attention { " (not wanted)" } else { "" };
             let p = |p: Option<f64>| p.map(number).unwrap_or_default();
-            vec![table::cut(&row.indicator, 40), row.cells.clone(), format!("{}{attention}", row.word), p(row.p), p(row.p_adjusted)]
+            vec![
+                table::cut(&row.indicator, 40),
+                row.cells.clone(),
+                format!("{}{attention}", row.word),
+                p(row.p),
+                p(row.p_adjusted),
+            ]
         })
         .collect();
     if rows.is_empty() {

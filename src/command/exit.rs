@@ -24,7 +24,9 @@ impl Exit {
     /// The exit code for a problem.
     pub fn of(problem: &Problem) -> Self {
         match problem.kind {
-            ProblemKind::Malformed | ProblemKind::NotFound | ProblemKind::TooLarge | ProblemKind::Unsupported => Exit::WrongRequest,
+            ProblemKind::Malformed | ProblemKind::NotFound | ProblemKind::TooLarge | ProblemKind::Unsupported => {
+                Exit::WrongRequest
+            }
             ProblemKind::Busy | ProblemKind::Broken => Exit::Failed,
         }
     }

@@ -95,7 +95,8 @@ pub fn annotate(
     } else {
         let cells = read_cells(input, format, &[], progress, &mut annotated.notes)?;
         annotated.notes.push("The file is not of a form that sheets can be added to; the copy is a new workbook with its values and the new sheets.".into());
-        let sheets = cells.sheets.iter().map(|sheet| (sheet.name.as_str(), Box::new(cells.all(sheet)) as Box<dyn Iterator<Item = _>>));
+        let sheets =
+            cells.sheets.iter().map(|sheet| (sheet.name.as_str(), Box::new(cells.all(sheet)) as Box<dyn Iterator<Item = _>>));
         let values = render::values_only(sheets)?;
         let book = Workbook::open(Cursor::new(values), Limits::default())?;
         write(book, &cells, None, false, settings, made_on, output, annotated, progress)
@@ -140,14 +141,22 @@ fn check_allowed<R: Read + Seek>(book: &Workbook<R>, settings: &Settings, notes:
 }
 
 /// Reads the cells; a workbook whose cells cannot be read is still given its sheets, which then say so.
-fn read_cells(input: &Path, format: Format, skip: &[String], progress: &mut dyn FnMut(Step), notes: &mut Vec<String>) -> Result<Cells, Problem> {
+fn read_cells(
+    input: &Path,
+    format: Format,
+    skip: &[String],
+    progress: &mut dyn FnMut(Step),
+    notes: &mut Vec<String>,
+) -> Result<Cells, Problem> {
     let step = |done, total| Step { stage: Stage::Reading, done, total };
     match survey::read(input, format, skip, &mut |done, total| progress(step(done, total))) {
         Ok(cells) => Ok(cells),
         Err(error @ survey::Error::Unreadable(_)) if format == Format::Package => {
             let sentence = format!("No reading could be taken from it: {error}.");
             notes.push(sentence.clone());
-            Ok(Cells { remarks: vec![sentence], ..Cells::default() })
+            let mut none = Cells::default();
+            none.remarks.push(sentence);
+            Ok(none)
         }
         Err(error) => Err(error.into()),
     }

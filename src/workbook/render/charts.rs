@@ -5,7 +5,10 @@
 
 use std::collections::BTreeMap;
 
-use rust_xlsxwriter::{Chart, ChartAxisDateUnitType, ChartFormat, ChartFont, ChartLegendPosition, ChartLine, ChartMarker, ChartMarkerType, ChartType, Color, Format, Formula, Worksheet};
+use rust_xlsxwriter::{
+    Chart, ChartAxisDateUnitType, ChartFont, ChartFormat, ChartLegendPosition, ChartLine, ChartMarker, ChartMarkerType,
+    ChartType, Color, Format, Formula, Worksheet,
+};
 
 use super::look::Look;
 use super::{Error, Input, fitting, live, page, serial, wording};
@@ -39,7 +42,9 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
             continue;
         }
         let (left, top) = ((place % 2) as u16 * 8, 2 + (place / 2) as u32 * ROWS_A_CHART);
-        let direct = series.scale.grades().is_none() && !matches!(judged.indicator.place.rows, Rows::Listed(_)) && judged.indicator.as_text.is_empty();
+        let direct = series.scale.grades().is_none()
+            && !matches!(judged.indicator.place.rows, Rows::Listed(_))
+            && judged.indicator.as_text.is_empty();
         let keep = series.len() <= MOST_KEPT_OF_ONE && kept + series.len() <= MOST_KEPT;
         let chart = if direct {
             let placeholder = placeholders.entry(judged.indicator.place.sheet.clone()).or_insert_with(Worksheet::new);
@@ -49,7 +54,9 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
             }
             let range = judged.indicator.place.range();
             let moments = judged.indicator.place.moments_range();
-            let corners = |range: crate::workbook::Range| (range.sheet.clone(), range.first.row, range.first.column as u16, range.last.row, range.last.column as u16);
+            let corners = |range: crate::workbook::Range| {
+                (range.sheet.clone(), range.first.row, range.first.column as u16, range.last.row, range.last.column as u16)
+            };
             match range {
                 Some(range) => draw(judged, corners(range), moments.map(corners)),
                 None => continue,
@@ -67,7 +74,12 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
         sheet.insert_chart(top, left, &chart)?;
     }
     if input.judged.len() > MOST_CHARTS {
-        sheet.write_with_format(1, 0, format!("The first {MOST_CHARTS} of {} indicators are drawn.", input.judged.len()), &look.subtitle)?;
+        sheet.write_with_format(
+            1,
+            0,
+            format!("The first {MOST_CHARTS} of {} indicators are drawn.", input.judged.len()),
+            &look.subtitle,
+        )?;
     }
     let sheets = placeholders.into_iter().map(|(name, mut sheet)| sheet.set_name(&name).map(|_| ()).map(|()| sheet));
     Ok((sheet, sheets.collect::<Result<_, _>>()?))
@@ -80,8 +92,15 @@ fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
     let series = &judged.indicator.series;
     let mut chart = Chart::new(ChartType::Line);
     let line = ChartLine::new().set_color(INK).set_width(1.25).clone();
-    let mut dot = ChartFormat::new().set_solid_fill(&rust_xlsxwriter::ChartSolidFill::new().set_color(INK)).set_line(&ChartLine::new().set_color(INK)).clone();
-    let marker = ChartMarker::new().set_type(ChartMarkerType::Circle).set_size(if series.len() > 120 { 2 } else { 4 }).set_format(&mut dot).clone();
+    let mut dot = ChartFormat::new()
+        .set_solid_fill(&rust_xlsxwriter::ChartSolidFill::new().set_color(INK))
+        .set_line(&ChartLine::new().set_color(INK))
+        .clone();
+    let marker = ChartMarker::new()
+        .set_type(ChartMarkerType::Circle)
+        .set_size(if series.len() > 120 { 2 } else { 4 })
+        .set_format(&mut dot)
+        .clone();
     let drawn = chart.add_series();
     drawn.set_values((values.0.as_str(), values.1, values.2, values.3, values.4));
     if let Some(moments) = &moments {
@@ -110,7 +129,11 @@ fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
     axis.set_font(&font(9)).set_major_gridlines_line(&ChartLine::new().set_color(GRID).set_width(0.5));
     if let Some(grades) = series.scale.grades() {
         let words: Vec<String> = grades.words().iter().enumerate().map(|(place, word)| format!("{} {word}", place + 1)).collect();
-        axis.set_min(1).set_max(grades.words().len() as f64).set_major_unit(1).set_name(fitting(&words.join(", ")).as_str()).set_name_font(&font(8));
+        axis.set_min(1)
+            .set_max(grades.words().len() as f64)
+            .set_major_unit(1)
+            .set_name(fitting(&words.join(", ")).as_str())
+            .set_name_font(&font(8));
     }
     chart
 }
@@ -135,7 +158,9 @@ fn keep_readings(sheet: &mut Worksheet, input: &Input, judged: &Judged) -> Resul
         let Some(column) = indicator.place.moments else { continue };
         let moments = &indicator.series.moments;
         match moments.kind() {
-            MomentKind::Date if !moments.has_labels() => sheet.write_with_format(cell.row, column as u16, serial(input, moments.axis(index)), &date)?,
+            MomentKind::Date if !moments.has_labels() => {
+                sheet.write_with_format(cell.row, column as u16, serial(input, moments.axis(index)), &date)?
+            }
             MomentKind::Number if !moments.has_labels() => sheet.write(cell.row, column as u16, moments.axis(index))?,
             _ => sheet.write(cell.row, column as u16, fitting(&moments.label(index)))?,
         };
@@ -152,7 +177,8 @@ fn write_helpers(sheet: &mut Worksheet, input: &Input, look: &Look, judged: &Jud
         let row = 2 + index as u32;
         match (series.moments.kind(), indicator.place.moments) {
             (MomentKind::Date, Some(moments)) if !series.moments.has_labels() => {
-                let formula = Formula::new(live::reference(indicator, index, moments)).set_result(serial(input, series.moments.axis(index)).to_string());
+                let formula = Formula::new(live::reference(indicator, index, moments))
+                    .set_result(serial(input, series.moments.axis(index)).to_string());
                 sheet.write_with_format(row, column, formula, &look.date)?;
             }
             (MomentKind::Date | MomentKind::Label, _) => {

@@ -25,7 +25,14 @@ pub fn sheet(input: &Input, look: &Look, family: &Family) -> Result<Worksheet, E
     order.sort_by_key(|&index| rank(&input.judged[index]));
     for (place, &index) in order.iter().enumerate() {
         let member = family.members.iter().find(|member| member.index == index);
-        write_row(&mut sheet, HEADING_ROW + 1 + place as u32, input, look, &input.judged[index], member.map(|member| member.row))?;
+        write_row(
+            &mut sheet,
+            HEADING_ROW + 1 + place as u32,
+            input,
+            look,
+            &input.judged[index],
+            member.map(|member| member.row),
+        )?;
     }
     let mut row = HEADING_ROW + 1 + order.len() as u32;
     if order.is_empty() {
@@ -63,7 +70,14 @@ fn summary(input: &Input) -> String {
     format!("{indicators}; {attention}. Made by {PROGRAM} on {made}.")
 }
 
-fn write_row(sheet: &mut Worksheet, row: u32, input: &Input, look: &Look, judged: &Judged, p_row: Option<u32>) -> Result<(), Error> {
+fn write_row(
+    sheet: &mut Worksheet,
+    row: u32,
+    input: &Input,
+    look: &Look,
+    judged: &Judged,
+    p_row: Option<u32>,
+) -> Result<(), Error> {
     let finding = &judged.finding;
     let attention = finding.needs_attention();
     let words = if attention { &look.strong } else { &look.wrapped };
@@ -92,7 +106,12 @@ fn write_row(sheet: &mut Worksheet, row: u32, input: &Input, look: &Look, judged
     sheet.write_with_format(row, 6, series.len() as u32, &look.whole)?;
     sheet.write_with_format(row, 7, judged.indicator.understood.missing.len() as u32, &look.whole)?;
     sheet.write_with_format(row, 8, "", &look.text)?;
-    if let Some(range) = judged.indicator.place.range().filter(|_| !matches!(judged.indicator.place.rows, Rows::Listed(_)) && series.scale.grades().is_none()) {
+    if let Some(range) = judged
+        .indicator
+        .place
+        .range()
+        .filter(|_| !matches!(judged.indicator.place.rows, Rows::Listed(_)) && series.scale.grades().is_none())
+    {
         let reversed = matches!(judged.indicator.place.rows, Rows::Up { .. });
         let column = range.first.column as u16;
         let spark = Sparkline::new()

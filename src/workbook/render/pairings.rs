@@ -83,7 +83,8 @@ pub fn sheet(input: &Input, look: &Look, layout: &Layout) -> Result<Worksheet, E
         let name = &judged.indicator.series.name;
         if listed.listed == 0 {
             sheet.write_with_format(listed.first_row, 0, fitting(name), &look.text)?;
-            let sentence = format!("{} pairs; too many to list one by one, the counts are on {}", listed.all, input.names.statistics);
+            let sentence =
+                format!("{} pairs; too many to list one by one, the counts are on {}", listed.all, input.names.statistics);
             sheet.write_with_format(listed.first_row, 10, sentence, &look.wrapped)?;
         }
         for (number, pairing) in pairings.list.iter().take(listed.listed).enumerate() {
@@ -102,7 +103,14 @@ pub fn sheet(input: &Input, look: &Look, layout: &Layout) -> Result<Worksheet, E
     Ok(sheet)
 }
 
-fn write_pair(sheet: &mut Worksheet, row: u32, input: &Input, look: &Look, indicator: &Indicator, pairing: &Pairing) -> Result<(), Error> {
+fn write_pair(
+    sheet: &mut Worksheet,
+    row: u32,
+    input: &Input,
+    look: &Look,
+    indicator: &Indicator,
+    pairing: &Pairing,
+) -> Result<(), Error> {
     let (earlier, later) = (pairing.earlier as usize, pairing.later as usize);
     sheet.write_with_format(row, 2, pairing.earlier + 1, &look.whole)?;
     sheet.write_with_format(row, 5, pairing.later + 1, &look.whole)?;
@@ -125,7 +133,15 @@ fn write_pair(sheet: &mut Worksheet, row: u32, input: &Input, look: &Look, indic
 }
 
 /// Writes a moment: live where the cell holds a date, else as it was read.
-fn write_moment(sheet: &mut Worksheet, row: u32, column: u16, input: &Input, look: &Look, indicator: &Indicator, index: usize) -> Result<(), Error> {
+fn write_moment(
+    sheet: &mut Worksheet,
+    row: u32,
+    column: u16,
+    input: &Input,
+    look: &Look,
+    indicator: &Indicator,
+    index: usize,
+) -> Result<(), Error> {
     let moments = &indicator.series.moments;
     match (moments.kind(), indicator.place.moments) {
         (MomentKind::Date, Some(moments_column)) if !moments.has_labels() => {
@@ -144,7 +160,14 @@ fn write_moment(sheet: &mut Worksheet, row: u32, column: u16, input: &Input, loo
 }
 
 /// Writes a reading: live, or as it was read where the cell holds text. Tells whether it is known only as a limit.
-fn write_value(sheet: &mut Worksheet, row: u32, column: u16, look: &Look, indicator: &Indicator, index: usize) -> Result<bool, Error> {
+fn write_value(
+    sheet: &mut Worksheet,
+    row: u32,
+    column: u16,
+    look: &Look,
+    indicator: &Indicator,
+    index: usize,
+) -> Result<bool, Error> {
     let series = &indicator.series;
     let shown = series.show(index);
     let is_text = indicator.as_text.binary_search(&(index as u32)).is_ok();

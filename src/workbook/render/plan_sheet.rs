@@ -101,7 +101,9 @@ pub fn read_back(rows: &[Vec<String>]) -> Option<Plan> {
         .cloned()
         .unwrap_or_default();
     for row in &rows[at + 1..] {
-        let text = |index: usize| columns[index].and_then(|column| row.get(column)).map(|cell| cell.trim().to_owned()).unwrap_or_default();
+        let text = |index: usize| {
+            columns[index].and_then(|column| row.get(column)).map(|cell| cell.trim().to_owned()).unwrap_or_default()
+        };
         let read = PlanRow {
             judge: text(0),
             indicator: text(1),

@@ -34,7 +34,8 @@ pub struct Family {
 /// Lays the p-values out.
 pub fn family(input: &Input, layout: &Layout) -> Family {
     let indices = input.judged.iter().enumerate().filter(|(_, judged)| judged.finding.result.is_ok()).map(|(index, _)| index);
-    let members: Vec<Member> = indices.enumerate().map(|(place, index)| Member { index, row: HEADING_ROW + 1 + place as u32, formula: None }).collect();
+    let members: Vec<Member> =
+        indices.enumerate().map(|(place, index)| Member { index, row: HEADING_ROW + 1 + place as u32, formula: None }).collect();
     let facts_heading = HEADING_ROW + members.len() as u32 + 4;
     let mut family = Family { members, facts_heading };
     let mut row = facts_heading + 1;
@@ -63,7 +64,8 @@ fn p_formula(judged: &Judged, first_fact: u32, layout: &Layout, index: usize) ->
     let parameters: cox_stuart::Parameters = own_parameters(&judged.row);
     let countable = judged.finding.card.key == "cox-stuart" && parameters.pairs != PairBy::Weighted && outcome.p.by == By::Exact;
     layout.of(index).filter(|_| countable)?;
-    let place = |key: &str| facts(judged).iter().position(|fact| fact.key == key).map(|at| format!("$C${}", first_fact + at as u32 + 1));
+    let place =
+        |key: &str| facts(judged).iter().position(|fact| fact.key == key).map(|at| format!("$C${}", first_fact + at as u32 + 1));
     Some(live::sign_test_p(&place("rises")?, &place("falls")?, &place("ties")?, parameters.ties, judged.finding.question.seek))
 }
 
@@ -104,14 +106,21 @@ fn write_family(sheet: &mut Worksheet, input: &Input, look: &Look, family: &Fami
     let Some(last) = family.members.last() else { return Ok(()) };
     let (top, bottom) = (HEADING_ROW + 2, last.row + 1);
     let (all_p, factors) = (format!("$C${top}:$C${bottom}"), format!("$D${top}:$D${bottom}"));
-    let own: Vec<f64> = family.members.iter().filter_map(|member| input.judged[member.index].finding.result.as_ref().ok()).map(|o| o.p.value).collect();
+    let own: Vec<f64> = family
+        .members
+        .iter()
+        .filter_map(|member| input.judged[member.index].finding.result.as_ref().ok())
+        .map(|o| o.p.value)
+        .collect();
     for (member, p) in family.members.iter().zip(&own) {
         let judged = &input.judged[member.index];
         let (row, cell) = (member.row, format!("$C${}", member.row + 1));
         sheet.write_with_format(row, 0, fitting(&judged.indicator.series.name), &look.text)?;
         sheet.write_with_format(row, 1, judged.finding.card.title, &look.text)?;
         match &member.formula {
-            Some(formula) => sheet.write_with_format(row, 2, Formula::new(formula).set_result(p.to_string()), &look.probability)?,
+            Some(formula) => {
+                sheet.write_with_format(row, 2, Formula::new(formula).set_result(p.to_string()), &look.probability)?
+            }
             None => sheet.write_with_format(row, 2, *p, &look.probability)?,
         };
         let factor = own.iter().filter(|other| *other >= p).count();
@@ -121,7 +130,12 @@ fn write_family(sheet: &mut Worksheet, input: &Input, look: &Look, family: &Fami
             match input.adjustment {
                 Adjustment::Holm => {
                     let formula = format!("=MIN(1,SUMPRODUCT(MAX(({all_p}<={cell})*{factors}*{all_p})))");
-                    sheet.write_with_format(row, 4, Formula::new(formula).set_result(adjusted.p.to_string()), &look.probability)?;
+                    sheet.write_with_format(
+                        row,
+                        4,
+                        Formula::new(formula).set_result(adjusted.p.to_string()),
+                        &look.probability,
+                    )?;
                 }
                 _ => {
                     sheet.write_with_format(row, 4, adjusted.p, &look.probability)?;
@@ -136,7 +150,15 @@ fn write_family(sheet: &mut Worksheet, input: &Input, look: &Look, family: &Fami
 }
 
 /// A formula for a count of pairs: on the listed pairs, else on the user's ranges where the pairs are regular.
-fn count_formula(input: &Input, judged: &Judged, fact: &Fact, layout: &Layout, index: usize, first: u32, row: u32) -> Option<String> {
+fn count_formula(
+    input: &Input,
+    judged: &Judged,
+    fact: &Fact,
+    layout: &Layout,
+    index: usize,
+    first: u32,
+    row: u32,
+) -> Option<String> {
     let listed = layout.of(index)?;
     if fact.key == "share_of_rises" {
         return Some(format!("=C{}/(C{}+C{})", first + 2, first + 2, first + 3));
@@ -162,13 +184,24 @@ fn count_formula(input: &Input, judged: &Judged, fact: &Fact, layout: &Layout, i
     })
 }
 
-fn write_fact(sheet: &mut Worksheet, row: u32, look: &Look, judged: &Judged, fact: &Fact, formula: Option<String>) -> Result<(), Error> {
+fn write_fact(
+    sheet: &mut Worksheet,
+    row: u32,
+    look: &Look,
+    judged: &Judged,
+    fact: &Fact,
+    formula: Option<String>,
+) -> Result<(), Error> {
     sheet.write_with_format(row, 0, fitting(&judged.indicator.series.name), &look.text)?;
     sheet.write_with_format(row, 1, fact.label, &look.text)?;
     let how = if formula.is_some() { wording::BY_FORMULA } else { wording::BY_RISEFALL };
     match (&fact.value, formula) {
-        (Datum::Integer(count), Some(formula)) => sheet.write_with_format(row, 2, Formula::new(formula).set_result(count.to_string()), &look.whole)?,
-        (Datum::Number(number), Some(formula)) => sheet.write_with_format(row, 2, Formula::new(formula).set_result(number.to_string()), &look.number)?,
+        (Datum::Integer(count), Some(formula)) => {
+            sheet.write_with_format(row, 2, Formula::new(formula).set_result(count.to_string()), &look.whole)?
+        }
+        (Datum::Number(number), Some(formula)) => {
+            sheet.write_with_format(row, 2, Formula::new(formula).set_result(number.to_string()), &look.number)?
+        }
         (Datum::Integer(count), None) => sheet.write_with_format(row, 2, *count as f64, &look.whole)?,
         (Datum::Number(number), None) if number.is_finite() => {
             let format = if fact.key.starts_with("p_") || fact.key.ends_with("_p") { &look.probability } else { &look.number };

@@ -31,8 +31,11 @@ pub fn values_only<'a>(sheets: impl IntoIterator<Item = Sheet<'a>>) -> Result<Ve
                 Cell::Duration(days) => sheet.write_with_format(row, column, days, &span)?,
                 Cell::Date(moment) => {
                     let (day, clock) = (moment.date(), moment.time());
-                    let serial = ExcelDateTime::from_ymd(day.year() as u16, day.month() as u8, day.day() as u8)?
-                        .and_hms(clock.hour() as u16, clock.minute() as u8, clock.second() as u8)?;
+                    let serial = ExcelDateTime::from_ymd(day.year() as u16, day.month() as u8, day.day() as u8)?.and_hms(
+                        clock.hour() as u16,
+                        clock.minute() as u8,
+                        clock.second() as u8,
+                    )?;
                     let format = if clock == jiff::civil::Time::midnight() { &date } else { &time };
                     sheet.write_with_format(row, column, &serial, format)?
                 }

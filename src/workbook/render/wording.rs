@@ -30,7 +30,10 @@ pub const WORDS: [(&str, &str); 6] = [
     ("not shown", "The readings do not show a trend. That does not show that there is none."),
     ("too few", "No readings of this number could have reached the risk."),
     ("declined", "The test does not apply; the reason is stated."),
-    ("p", "The chance of evidence at least as clear if there were no trend. Small values speak for a trend. The conclusion rests on the value judged together."),
+    (
+        "p",
+        "The chance of evidence at least as clear if there were no trend. Small values speak for a trend. The conclusion rests on the value judged together.",
+    ),
 ];
 pub const CAUTION: &str = "A conclusion is a statement about these readings, not a diagnosis or a finding of compliance. Where readings concern health, safety or rules, local procedures and licensed practice decide.";
 

@@ -147,7 +147,8 @@ impl Cells {
 
     /// The filled cells of a sheet with row and column, column by column.
     pub fn all<'a>(&'a self, sheet: &'a SheetCells) -> impl Iterator<Item = (u32, u32, Cell)> + 'a {
-        let columns = (0..sheet.width()).flat_map(|column| sheet.filled(column, 0, u32::MAX).map(move |(row, cell)| (row, column, cell)));
+        let columns =
+            (0..sheet.width()).flat_map(|column| sheet.filled(column, 0, u32::MAX).map(move |(row, cell)| (row, column, cell)));
         columns.map(|(row, column, cell)| (row, column, self.unpack(cell)))
     }
 

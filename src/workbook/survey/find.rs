@@ -84,7 +84,11 @@ fn long_form(cells: &Cells, sheet: &SheetCells, table: &Table) -> Option<(usize,
     let others = |index: &usize| *index != moments;
     let values: Vec<usize> = (0..looks.len())
         .filter(others)
-        .filter(|&index| looks[index].numbers * 10 >= looks[index].filled * 6 && looks[index].numbers >= 2 && !words::is_label_heading(&table.columns[index].heading))
+        .filter(|&index| {
+            looks[index].numbers * 10 >= looks[index].filled * 6
+                && looks[index].numbers >= 2
+                && !words::is_label_heading(&table.columns[index].heading)
+        })
         .collect();
     let [values] = values[..] else { return None };
     let names = (0..looks.len()).filter(others).find(|&index| {
@@ -127,7 +131,8 @@ fn find_wide(cells: &Cells, sheet: &SheetCells, table: &Table, survey: &mut Surv
     let count = table.rows.1 - table.rows.0 + 1;
     let moments_column = table.moments.map(|index| table.columns[index].column);
     let down = Rows::Down { first: table.rows.0, count };
-    let as_place = |column: u32, rows: Rows| Place { sheet: sheet.name.clone(), column, moments: moments_column, rows, header: None };
+    let as_place =
+        |column: u32, rows: Rows| Place { sheet: sheet.name.clone(), column, moments: moments_column, rows, header: None };
     let mut moments = read_moments(cells, sheet, &as_place(0, down.clone()));
     let mut rows = down;
     if let Ok(read) = &moments
@@ -141,7 +146,8 @@ fn find_wide(cells: &Cells, sheet: &SheetCells, table: &Table, survey: &mut Surv
         match left_out(&look, column, cells, sheet, table) {
             Some(why) => {
                 if let Some(why) = why {
-                    let heading = if column.heading.is_empty() { "without a heading".to_owned() } else { format!("`{}`", column.heading) };
+                    let heading =
+                        if column.heading.is_empty() { "without a heading".to_owned() } else { format!("`{}`", column.heading) };
                     let letters = crate::workbook::reference::column_letters(column.column);
                     survey.remarks.push(format!("Column {letters} of the sheet {}, {heading}, was left out: {why}.", sheet.name));
                 }
@@ -193,7 +199,10 @@ fn counts_rows(sheet: &SheetCells, column: &Column, table: &Table) -> bool {
     first
         && table.columns.len() > 1
         && column.heading.len() <= 3
-        && sheet.filled(column.column, table.rows.0, table.rows.1).enumerate().all(|(index, (_, cell))| cell == Packed::Number(index as f64 + 1.0))
+        && sheet
+            .filled(column.column, table.rows.0, table.rows.1)
+            .enumerate()
+            .all(|(index, (_, cell))| cell == Packed::Number(index as f64 + 1.0))
 }
 
 /// The moments at a place; why there are none if they cannot be read.

@@ -264,14 +264,19 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
     let mut cells = Cells::default();
     let name = path.file_stem().map(|stem| stem.to_string_lossy().into_owned()).unwrap_or_default();
     cells.begin_sheet(&name);
-    let mut reader =
-        csv::ReaderBuilder::new().delimiter(separator).has_headers(false).flexible(true).from_reader(Cursor::new(text.as_bytes()));
+    let mut reader = csv::ReaderBuilder::new()
+        .delimiter(separator)
+        .has_headers(false)
+        .flexible(true)
+        .from_reader(Cursor::new(text.as_bytes()));
     for record in reader.records() {
         let record = record.map_err(unreadable)?;
         let row = record.position().map_or(0, |position| position.record()) as u32;
         for (column, field) in record.iter().enumerate() {
             let packed = match field.trim().parse::<f64>() {
-                Ok(number) if number.is_finite() && field.trim().bytes().all(|b| b.is_ascii_digit() || b"+-.eE".contains(&b)) => Packed::Number(number),
+                Ok(number) if number.is_finite() && field.trim().bytes().all(|b| b.is_ascii_digit() || b"+-.eE".contains(&b)) => {
+                    Packed::Number(number)
+                }
                 _ => pack_text(field, &mut cells),
             };
             cells.add(row, column as u32, packed);
@@ -293,7 +298,8 @@ fn separator(text: &str) -> u8 {
     let lines: Vec<&str> = text.lines().filter(|line| !line.trim().is_empty()).take(20).collect();
     let score = |separator: &u8| {
         let counts: Vec<usize> = lines.iter().map(|line| line.bytes().filter(|byte| byte == separator).count()).collect();
-        let usual = counts.iter().copied().max_by_key(|&count| counts.iter().filter(|&&other| other == count).count()).unwrap_or(0);
+        let usual =
+            counts.iter().copied().max_by_key(|&count| counts.iter().filter(|&&other| other == count).count()).unwrap_or(0);
         let agreeing = counts.iter().filter(|&&count| count == usual && usual > 0).count();
         (agreeing, usual)
     };

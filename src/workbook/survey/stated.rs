@@ -40,8 +40,15 @@ pub fn indicator_at(cells: &Cells, row: &PlanRow) -> Result<Indicator, StatedErr
             return Ok(None);
         }
         let other: Range = text.parse()?;
-        let same = other.sheet == range.sheet && other.is_column() && other.first.row == range.first.row && other.last.row == range.last.row;
-        if same { Ok(Some(other.first.column)) } else { Err(StatedError::Beside { moments: other.to_string(), cells: range.to_string() }) }
+        let same = other.sheet == range.sheet
+            && other.is_column()
+            && other.first.row == range.first.row
+            && other.last.row == range.last.row;
+        if same {
+            Ok(Some(other.first.column))
+        } else {
+            Err(StatedError::Beside { moments: other.to_string(), cells: range.to_string() })
+        }
     };
     let moments = beside(&row.moments)?;
     let names = beside(&row.names)?;

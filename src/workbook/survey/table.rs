@@ -149,13 +149,14 @@ fn table(cells: &Cells, sheet: &SheetCells, block: Block) -> Option<Table> {
     // The readings begin where cells that look like data go on in the row below.
     let first = (block.top..=block.bottom).take(200).find(|&row| {
         let here = data(row);
-        let goes_on = row == block.bottom || (block.left..=block.right).any(|column| {
-            is_data(cells, sheet.get(row, column)) && is_data(cells, sheet.get(row + 1, column))
-        });
+        let goes_on = row == block.bottom
+            || (block.left..=block.right)
+                .any(|column| is_data(cells, sheet.get(row, column)) && is_data(cells, sheet.get(row + 1, column)));
         here > 0 && 2 * here >= filled(row).min(3) && (filled(row) >= 2 || width == 1) && goes_on
     })?;
     let heading_rows = heading_rows(block, first, &filled, &data);
-    let columns: Vec<Column> = (block.left..=block.right).map(|column| heading(cells, sheet, block, column, &heading_rows)).collect();
+    let columns: Vec<Column> =
+        (block.left..=block.right).map(|column| heading(cells, sheet, block, column, &heading_rows)).collect();
     let mut table = Table { rows: (first, block.bottom), columns, moments: None };
     table.moments = find_moments(cells, sheet, &table);
     table.rows.1 = last_reading(cells, sheet, &table);
@@ -220,14 +221,16 @@ fn find_moments(cells: &Cells, sheet: &SheetCells, table: &Table) -> Option<usiz
             return true;
         }
         let kind_of = |cells: &[Cell]| Moments::of_cells(cells).ok().map(|moments| (moments.kind(), moments));
-        let words: Vec<Cell> = looked.iter().filter(|cell| matches!(cell, Cell::Text(text) if is_moment_text(text))).cloned().collect();
+        let words: Vec<Cell> =
+            looked.iter().filter(|cell| matches!(cell, Cell::Text(text) if is_moment_text(text))).cloned().collect();
         if words.len() * 10 >= looked.len() * 9 {
             let months = words.iter().all(|cell| crate::reading::moment::month_number(&cell.quote()).is_some());
             return months || kind_of(&words).is_some_and(|(kind, _)| kind != MomentKind::Label) && !looks_like_values(&words);
         }
         let whole = looked.iter().all(|cell| matches!(cell, Cell::Number(number) if number.fract() == 0.0));
         whole && words::is_moment_heading(&column.heading) && {
-            let numbers: Vec<f64> = looked.iter().filter_map(|cell| if let Cell::Number(number) = cell { Some(*number) } else { None }).collect();
+            let numbers: Vec<f64> =
+                looked.iter().filter_map(|cell| if let Cell::Number(number) = cell { Some(*number) } else { None }).collect();
             numbers.windows(2).all(|pair| pair[0] <= pair[1]) || numbers.windows(2).all(|pair| pair[0] >= pair[1])
         }
     })

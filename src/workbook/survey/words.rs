@@ -3,8 +3,8 @@
 /// Rows below a table that sum it up.
 pub fn is_summary(text: &str) -> bool {
     const WORDS: [&str; 18] = [
-        "total", "totals", "sum", "subtotal", "grand", "average", "averages", "avg", "mean", "median", "min", "minimum", "max", "maximum", "count",
-        "std", "stdev", "ytd",
+        "total", "totals", "sum", "subtotal", "grand", "average", "averages", "avg", "mean", "median", "min", "minimum", "max",
+        "maximum", "count", "std", "stdev", "ytd",
     ];
     let first = text.trim_start().split(|c: char| !c.is_alphanumeric()).next().unwrap_or_default().to_lowercase();
     WORDS.contains(&first.as_str())
@@ -13,8 +13,25 @@ pub fn is_summary(text: &str) -> bool {
 /// Headings of a column that tells when; plain whole numbers count as moments only under one of them.
 pub fn is_moment_heading(text: &str) -> bool {
     const WORDS: [&str; 19] = [
-        "date", "day", "week", "wk", "month", "quarter", "year", "period", "time", "when", "moment", "visit", "round", "hour", "shift", "sample",
-        "run", "inspection", "term",
+        "date",
+        "day",
+        "week",
+        "wk",
+        "month",
+        "quarter",
+        "year",
+        "period",
+        "time",
+        "when",
+        "moment",
+        "visit",
+        "round",
+        "hour",
+        "shift",
+        "sample",
+        "run",
+        "inspection",
+        "term",
     ];
     words_of(text).any(|word| WORDS.contains(&word.as_str()))
 }
@@ -22,7 +39,23 @@ pub fn is_moment_heading(text: &str) -> bool {
 /// Headings of a column that only numbers or names its rows.
 pub fn is_label_heading(text: &str) -> bool {
     const WORDS: [&str; 17] = [
-        "id", "no", "nr", "number", "code", "ref", "reference", "key", "phone", "telephone", "zip", "postcode", "room", "row", "index", "isbn", "sku",
+        "id",
+        "no",
+        "nr",
+        "number",
+        "code",
+        "ref",
+        "reference",
+        "key",
+        "phone",
+        "telephone",
+        "zip",
+        "postcode",
+        "room",
+        "row",
+        "index",
+        "isbn",
+        "sku",
     ];
     let all: Vec<String> = words_of(text).collect();
     text.trim() == "#" || !all.is_empty() && all.iter().any(|word| WORDS.contains(&word.as_str())) && all.len() <= 2
@@ -38,14 +71,30 @@ pub fn is_indicator_heading(text: &str) -> bool {
 /// Headings under which words are grades rather than notes.
 pub fn is_grade_heading(text: &str) -> bool {
     const WORDS: [&str; 14] = [
-        "grade", "grading", "rating", "score", "level", "condition", "state", "quality", "mood", "behaviour", "behavior", "assessment",
-        "impression", "verdict",
+        "grade",
+        "grading",
+        "rating",
+        "score",
+        "level",
+        "condition",
+        "state",
+        "quality",
+        "mood",
+        "behaviour",
+        "behavior",
+        "assessment",
+        "impression",
+        "verdict",
     ];
     words_of(text).any(|word| WORDS.contains(&word.as_str()))
 }
 
 fn words_of(text: &str) -> impl Iterator<Item = String> {
-    text.split(|c: char| !c.is_alphanumeric()).filter(|word| !word.is_empty()).map(str::to_lowercase).collect::<Vec<_>>().into_iter()
+    text.split(|c: char| !c.is_alphanumeric())
+        .filter(|word| !word.is_empty())
+        .map(str::to_lowercase)
+        .collect::<Vec<_>>()
+        .into_iter()
 }
 
 /// Splits `Wait (min)` or `Rainfall [mm]` into the name and the unit.
