@@ -33,6 +33,7 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
     let mut sheet = Worksheet::new();
     page(&mut sheet, &input.names.charts, 0)?;
     sheet.set_freeze_panes(1, 0)?;
+    sheet.set_row_height(0, 24)?;
     sheet.write_with_format(0, 0, wording::CHARTS, &look.title)?;
     let mut placeholders = BTreeMap::new();
     let mut kept = 0;
@@ -73,6 +74,8 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
         };
         sheet.insert_chart(top, left, &chart)?;
     }
+    let drawn = input.judged.len().min(MOST_CHARTS) as u32;
+    sheet.set_print_area(0, 0, 2 + drawn.div_ceil(2) * ROWS_A_CHART, 15)?;
     if input.judged.len() > MOST_CHARTS {
         sheet.write_with_format(
             1,
@@ -113,7 +116,7 @@ fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
     let title: String = title.chars().take(250).collect();
     chart.title().set_name(title.as_str()).set_font(&font(12).set_bold().clone());
     chart.legend().set_hidden().set_position(ChartLegendPosition::Bottom);
-    chart.set_width(620).set_height(300);
+    chart.set_width(500).set_height(300);
     let axis = chart.x_axis();
     axis.set_font(&font(9));
     if series.moments.kind() == MomentKind::Date && !series.moments.has_labels() && moments.is_some() {

@@ -2,7 +2,7 @@
 
 use rust_xlsxwriter::{Formula, Sparkline, Url, Worksheet};
 
-use super::look::Look;
+use super::look::{Look, height};
 use super::statistics::Family;
 use super::{Error, Input, PROGRAM, fitting, page, wording};
 use crate::finding::Word;
@@ -125,7 +125,17 @@ fn write_row(
     if let Ok(outcome) = &finding.result {
         cautions.extend(outcome.cautions.iter().cloned());
     }
-    sheet.write_with_format(row, 9, fitting(&cautions.join(" ")), &look.wrapped)?;
+    let cautions = fitting(&cautions.join(" "));
+    sheet.write_with_format(row, 9, &cautions, &look.wrapped)?;
+    let cells = judged.indicator.place.range().map(|range| range.to_string()).unwrap_or_default();
+    let width = |column: usize| wording::CONCLUSION_COLUMNS[column].1;
+    let wrapped = [
+        (series.name.as_str(), width(0)),
+        (finding.conclusion.sentence.as_str(), width(3)),
+        (cautions.as_str(), width(9)),
+        (cells.as_str(), width(10)),
+    ];
+    sheet.set_row_height(row, height(&wrapped))?;
     match judged.indicator.place.range() {
         Some(range) => {
             let shown = range.to_string();

@@ -137,6 +137,7 @@ fn page(sheet: &mut Worksheet, name: &str, heading_row: u32) -> Result<(), Error
     sheet.set_footer("&L&A&RPage &P of &N").set_screen_gridlines(false);
     sheet.set_repeat_rows(heading_row, heading_row)?;
     sheet.set_freeze_panes(heading_row + 1, 1)?;
+    sheet.set_row_height(heading_row, 32)?;
     Ok(())
 }
 

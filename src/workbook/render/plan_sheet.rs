@@ -2,7 +2,7 @@
 
 use rust_xlsxwriter::{DataValidation, Worksheet};
 
-use super::look::Look;
+use super::look::{Look, height};
 use super::wording::PLAN_COLUMNS;
 use super::{Error, Input, fitting, page, wording};
 use crate::finding::request::Wanted;
@@ -46,6 +46,9 @@ pub fn sheet(input: &Input, look: &Look) -> Result<Worksheet, Error> {
                 _ => sheet.write_with_format(row, column as u16, fitting(text), &look.wrapped)?,
             };
         }
+        let widths = PLAN_COLUMNS.map(|(_, width, _)| width);
+        let wrapped: Vec<(&str, f64)> = cells(plan_row).into_iter().chain([remark.as_str()]).zip(widths).collect();
+        sheet.set_row_height(row, height(&wrapped))?;
         row += 1;
     }
     let last = (row + 200).max(row);

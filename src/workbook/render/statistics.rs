@@ -204,7 +204,7 @@ fn write_fact(
         }
         (Datum::Integer(count), None) => sheet.write_with_format(row, 2, *count as f64, &look.whole)?,
         (Datum::Number(number), None) if number.is_finite() => {
-            let format = if fact.key.starts_with("p_") || fact.key.ends_with("_p") { &look.probability } else { &look.number };
+            let format = if fact.key.starts_with("p_") || fact.key.ends_with("_p") { &look.probability } else { &look.share };
             sheet.write_with_format(row, 2, *number, format)?
         }
         (Datum::Text(text), _) => sheet.write_with_format(row, 2, fitting(text), &look.text)?,

@@ -7,17 +7,17 @@ pub const CHARTS: &str = "Trend charts";
 pub const PLAN: &str = "Trend plan";
 
 pub const CONCLUSION_COLUMNS: [(&str, f64); 11] = [
-    ("Indicator", 26.0),
-    ("Conclusion", 13.0),
-    ("Wanted?", 12.0),
-    ("In words", 58.0),
-    ("p", 10.0),
-    ("p, judged together", 11.0),
-    ("Readings", 10.0),
-    ("Missing", 9.0),
-    ("Course", 20.0),
-    ("To bear in mind", 44.0),
-    ("Cells", 24.0),
+    ("Indicator", 22.0),
+    ("Conclusion", 12.0),
+    ("Wanted?", 11.0),
+    ("In words", 48.0),
+    ("p", 9.0),
+    ("p, judged together", 10.0),
+    ("Readings", 9.0),
+    ("Missing", 8.0),
+    ("Course", 18.0),
+    ("To bear in mind", 36.0),
+    ("Cells", 20.0),
 ];
 pub const WANTED: &str = "wanted";
 pub const UNWANTED: &str = "not wanted";
