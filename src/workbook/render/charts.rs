@@ -12,7 +12,7 @@ use rust_xlsxwriter::{
 
 use super::look::Look;
 use super::{Error, Input, fitting, live, page, serial, wording};
-use crate::reading::Value;
+use crate::reading::{Missing, Value};
 use crate::reading::moment::MomentKind;
 use crate::workbook::indicator::{Judged, Rows};
 
@@ -43,9 +43,7 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
             continue;
         }
         let (left, top) = ((place % 2) as u16 * 8, 2 + (place / 2) as u32 * ROWS_A_CHART);
-        let direct = series.scale.grades().is_none()
-            && !matches!(judged.indicator.place.rows, Rows::Listed(_))
-            && judged.indicator.as_text.is_empty();
+        let direct = can_be_drawn_directly(judged);
         let keep = series.len() <= MOST_KEPT_OF_ONE && kept + series.len() <= MOST_KEPT;
         let chart = if direct {
             let placeholder = placeholders.entry(judged.indicator.place.sheet.clone()).or_insert_with(Worksheet::new);
@@ -86,6 +84,15 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
     }
     let sheets = placeholders.into_iter().map(|(name, mut sheet)| sheet.set_name(&name).map(|_| ()).map(|()| sheet));
     Ok((sheet, sheets.collect::<Result<_, _>>()?))
+}
+
+/// Whether a chart may draw the user's cells as they are: numbers or blank, one below the other. Words would be drawn as 0.
+fn can_be_drawn_directly(judged: &Judged) -> bool {
+    let Judged { indicator, .. } = judged;
+    indicator.series.scale.grades().is_none()
+        && !matches!(indicator.place.rows, Rows::Listed(_))
+        && indicator.as_text.is_empty()
+        && indicator.understood.missing.iter().all(|reading| reading.why == Missing::Blank)
 }
 
 /// Sheet, first row, first column, last row, last column.
