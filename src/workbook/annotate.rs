@@ -88,7 +88,7 @@ pub fn annotate(
         let earlier: Vec<String> = book.earlier_sheets().iter().map(|sheet| sheet.name.clone()).collect();
         let plan = earlier.iter().find(|name| SheetNames::is_plan(name)).cloned();
         let skip: Vec<String> = earlier.into_iter().filter(|name| Some(name) != plan.as_ref()).collect();
-        let mut cells = read_cells(input, format, &skip, progress, &mut annotated.notes)?;
+        let mut cells = read_and_verify(input, &skip, progress, &mut annotated.notes)?;
         let plan = plan.and_then(|name| take_plan(&mut cells, &name));
         let dates_from_1904 = book.dates_from_1904();
         write(book, &cells, plan, dates_from_1904, settings, made_on, output, annotated, progress)
@@ -138,6 +138,21 @@ fn check_allowed<R: Read + Seek>(book: &Workbook<R>, settings: &Settings, notes:
         notes.push("The digital signature of the original does not hold for the copy.".into());
     }
     Ok(())
+}
+
+/// Reads the cells while a second thread sees to it that no part is damaged.
+fn read_and_verify(
+    input: &Path,
+    skip: &[String],
+    progress: &mut dyn FnMut(Step),
+    notes: &mut Vec<String>,
+) -> Result<Cells, Problem> {
+    std::thread::scope(|scope| {
+        let verified = scope.spawn(|| graft::verify(BufReader::new(File::open(input)?)));
+        let cells = read_cells(input, Format::Package, skip, progress, notes);
+        verified.join().unwrap_or_else(|_| Err(graft::Error::Damaged("its parts cannot be unpacked".into())))?;
+        cells
+    })
 }
 
 /// Reads the cells; a workbook whose cells cannot be read is still given its sheets, which then say so.

@@ -26,6 +26,7 @@ use std::io::{Read, Seek, Write};
 pub use error::Error;
 pub use host::Sheet;
 pub use limits::Limits;
+pub use package::verify;
 
 use donor::Donor;
 use host::{AddedSheet, Host, MARKER};

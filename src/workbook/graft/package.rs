@@ -205,6 +205,25 @@ impl<R: Read + Seek> Package<R> {
     }
 }
 
+/// Unpacks every part once without keeping it: checksums must hold, and no XML part may declare a document type.
+pub fn verify<R: Read + Seek>(reader: R) -> Result<(), Error> {
+    const HEAD: usize = 1024;
+    let mut archive = ZipArchive::new(reader)?;
+    for index in 0..archive.len() {
+        let mut file = archive.by_index(index)?;
+        let name = file.name()?.into_owned();
+        let damaged = |error: std::io::Error| Error::Damaged(format!("the part {name} cannot be unpacked ({error})"));
+        let mut head = Vec::with_capacity(HEAD);
+        file.by_ref().take(HEAD as u64).read_to_end(&mut head).map_err(damaged)?;
+        let is_xml = name.ends_with(".xml") || name.ends_with(".rels");
+        if is_xml && head.windows(9).any(|window| window == b"<!DOCTYPE") {
+            return Err(Error::Part { part: name, error: super::tree::XmlError::DocType });
+        }
+        std::io::copy(&mut file, &mut std::io::sink()).map_err(damaged)?;
+    }
+    Ok(())
+}
+
 /// Writes a part, deflated, with a fixed time so that the same input gives the same bytes.
 pub fn write_part<W: std::io::Write + Seek>(zip: &mut zip::ZipWriter<W>, name: &str, bytes: &[u8]) -> Result<(), Error> {
     let options = zip::write::SimpleFileOptions::default()

@@ -12,8 +12,8 @@ use rust_xlsxwriter::{
 
 use super::look::Look;
 use super::{Error, Input, fitting, live, page, serial, wording};
-use crate::reading::{Missing, Value};
 use crate::reading::moment::MomentKind;
+use crate::reading::{Missing, Value};
 use crate::workbook::indicator::{Judged, Rows};
 
 /// The most charts that are drawn.

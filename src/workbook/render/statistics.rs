@@ -56,6 +56,9 @@ fn facts(judged: &Judged) -> Vec<Fact> {
     facts
 }
 
+/// Equal p-values may differ in their last digit where a cell computed one of them; they still count as equal.
+const NEARLY_ONE_ABOVE: f64 = 1.000000001;
+
 const COUNTS: [&str; 4] = ["pairs", "rises", "falls", "ties"];
 
 /// The formula of the p-value on the cells that hold the counts, if the test is one that cells can compute.
@@ -123,13 +126,14 @@ fn write_family(sheet: &mut Worksheet, input: &Input, look: &Look, family: &Fami
             }
             None => sheet.write_with_format(row, 2, *p, &look.probability)?,
         };
-        let factor = own.iter().filter(|other| *other >= p).count();
-        let factor_formula = Formula::new(format!("=SUMPRODUCT(--({all_p}>={cell}))")).set_result(factor.to_string());
+        let factor = own.iter().filter(|other| *other * NEARLY_ONE_ABOVE >= *p).count();
+        let factor_formula =
+            Formula::new(format!("=SUMPRODUCT(--({all_p}*{NEARLY_ONE_ABOVE}>={cell}))")).set_result(factor.to_string());
         sheet.write_with_format(row, 3, factor_formula, &look.whole)?;
         if let Some(adjusted) = judged.finding.adjusted {
             match input.adjustment {
                 Adjustment::Holm => {
-                    let formula = format!("=MIN(1,SUMPRODUCT(MAX(({all_p}<={cell})*{factors}*{all_p})))");
+                    let formula = format!("=MIN(1,SUMPRODUCT(MAX(({all_p}<={cell}*{NEARLY_ONE_ABOVE})*{factors}*{all_p})))");
                     sheet.write_with_format(
                         row,
                         4,

@@ -52,8 +52,22 @@ pub fn format(path: &Path) -> Result<Format, Error> {
         file.seek(SeekFrom::Start(0))?;
         return Ok(if names_binary_workbook(&mut file)? { Format::Xlsb } else { Format::Package });
     }
-    let wide = head.starts_with(&[0xFF, 0xFE]) || head.starts_with(&[0xFE, 0xFF]);
-    if wide || !head.contains(&0) { Ok(Format::Text) } else { Err(Error::Kind) }
+    if wide_encoding(&head).is_some() || !head.contains(&0) { Ok(Format::Text) } else { Err(Error::Kind) }
+}
+
+/// UTF-16 by its mark, or by every second byte of the beginning being zero.
+fn wide_encoding(bytes: &[u8]) -> Option<&'static encoding_rs::Encoding> {
+    const LOOKED_AT: usize = 512;
+    let head = &bytes[..bytes.len().min(LOOKED_AT) & !1];
+    let zeros = |offset: usize| head.iter().skip(offset).step_by(2).filter(|byte| **byte == 0).count();
+    let (even, odd, pairs) = (zeros(0), zeros(1), head.len() / 2);
+    match bytes {
+        [0xFF, 0xFE, ..] => Some(encoding_rs::UTF_16LE),
+        [0xFE, 0xFF, ..] => Some(encoding_rs::UTF_16BE),
+        _ if pairs >= 2 && even * 10 >= pairs * 8 && odd * 10 <= pairs => Some(encoding_rs::UTF_16BE),
+        _ if pairs >= 2 && odd * 10 >= pairs * 8 && even * 10 <= pairs => Some(encoding_rs::UTF_16LE),
+        _ => None,
+    }
 }
 
 const MIMETYPE: &[u8] = b"application/vnd.oasis.opendocument.spreadsheet";
@@ -253,8 +267,9 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
         return Err(Error::TooManyCells(MOST_CELLS));
     }
     let bytes = std::fs::read(path)?;
-    let (text, encoding) = match encoding_rs::Encoding::for_bom(&bytes) {
-        Some((encoding, _)) => (encoding.decode(&bytes).0, encoding.name()),
+    let marked = encoding_rs::Encoding::for_bom(&bytes).map(|(encoding, _)| encoding);
+    let (text, encoding) = match marked.or_else(|| wide_encoding(&bytes)) {
+        Some(encoding) => (encoding.decode(&bytes).0, encoding.name()),
         None => match std::str::from_utf8(&bytes) {
             Ok(text) => (text.into(), "UTF-8"),
             Err(_) => (encoding_rs::WINDOWS_1252.decode(&bytes).0, "windows-1252"),
