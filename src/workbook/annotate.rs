@@ -10,7 +10,7 @@ use jiff::civil::DateTime;
 
 use super::graft::{self, Limits, Workbook};
 use super::indicator::{Indicator, Judged};
-use super::judge::{draft, judge, together};
+use super::judge::{cells_as_found, draft, judge, together};
 use super::plan::{Plan, PlanRow};
 use super::render::{self, SheetNames};
 use super::settings::Settings;
@@ -249,7 +249,7 @@ fn choose(cells: &Cells, survey: &Survey, plan: Option<Plan>, settings: &Setting
             chosen.unjudged.push(row);
             continue;
         }
-        let (indicator, row) = from_row(cells, row, grown);
+        let (indicator, row) = from_row(cells, row, grown, settings);
         chosen.rows.push((indicator, row));
     }
     for indicator in found.into_iter().flatten() {
@@ -267,21 +267,25 @@ fn is_row_of(row: &PlanRow, indicator: &Indicator) -> bool {
     same_place && (row.names.trim().is_empty() || row.indicator.trim() == indicator.series.name)
 }
 
-/// The indicator that a row states. Rows that were added below its cells since are taken in.
-fn from_row(cells: &Cells, mut row: PlanRow, grown: Option<&Indicator>) -> (Indicator, PlanRow) {
-    if let Some(grown) = grown
-        && let (Some(range), Ok(stated)) = (grown.place.range(), row.cells.parse::<super::Range>())
-        && range.last.row > stated.last.row
+/// The indicator that a row states. Where the cells are still those that were found, readings added since are taken in.
+fn from_row(cells: &Cells, mut row: PlanRow, found: Option<&Indicator>, settings: &Settings) -> (Indicator, PlanRow) {
+    if let Some(found) = found
+        && cells_as_found(&row)
     {
-        row.cells = range.to_string();
-        row.moments = grown.place.moments_range().map(|range| range.to_string()).unwrap_or_default();
-        row.names = grown.place.names_range().map(|range| range.to_string()).unwrap_or_default();
+        let fresh = draft(found, &settings.defaults);
+        let as_drafted = row.grades == fresh.grades;
+        row = PlanRow { cells: fresh.cells, moments: fresh.moments, names: fresh.names, origin: fresh.origin, ..row };
+        if as_drafted {
+            let mut indicator = found.clone();
+            indicator.series.name.clone_from(&row.indicator);
+            return (indicator, row);
+        }
     }
     match survey::indicator_at(cells, &row) {
         Ok(mut indicator) => {
-            if let Some(grown) = grown {
-                indicator.series.unit = indicator.series.unit.take().or_else(|| grown.series.unit.clone());
-                indicator.place.header = grown.place.header;
+            if let Some(found) = found {
+                indicator.series.unit = indicator.series.unit.take().or_else(|| found.series.unit.clone());
+                indicator.place.header = found.place.header;
             }
             (indicator, row)
         }

@@ -12,11 +12,22 @@ use crate::reading::Missing;
 /// The test that is used where neither plan nor request names one.
 pub const USUAL_TEST: &str = "cox-stuart";
 
+/// How the origin of a row begins whose cells were found rather than stated.
+const FOUND: &str = "found at ";
+
+/// Whether the cells of a row are still those that were found, so that readings added since may be taken in.
+pub fn cells_as_found(row: &PlanRow) -> bool {
+    row.origin
+        .strip_prefix(FOUND)
+        .is_some_and(|rest| rest.split(';').next().is_some_and(|found| found.trim() == row.cells.trim()))
+}
+
 /// The first draft of an indicator's row in the plan: what was found, and the defaults of the request.
 pub fn draft(indicator: &Indicator, defaults: &Arguments) -> PlanRow {
     let sent = |name: &str| defaults.get(name).map(Argument::quote);
     let question = Question::default();
     let grades = indicator.understood.grades.as_ref().map(ToString::to_string).unwrap_or_default();
+    let cells = indicator.place.range().map(|range| range.to_string()).unwrap_or_default();
     let grades_origin = if indicator.understood.grades_assumed { "; order of the grades assumed" } else { "" };
     let own: Vec<String> = defaults
         .names()
@@ -26,7 +37,7 @@ pub fn draft(indicator: &Indicator, defaults: &Arguments) -> PlanRow {
     PlanRow {
         judge: "yes".into(),
         indicator: indicator.series.name.clone(),
-        cells: indicator.place.range().map(|range| range.to_string()).unwrap_or_default(),
+        cells: cells.clone(),
         moments: indicator.place.moments_range().map(|range| range.to_string()).unwrap_or_default(),
         names: indicator.place.names_range().map(|range| range.to_string()).unwrap_or_default(),
         grades,
@@ -35,7 +46,7 @@ pub fn draft(indicator: &Indicator, defaults: &Arguments) -> PlanRow {
         test: sent("test").unwrap_or_else(|| USUAL_TEST.into()),
         risk: sent("risk").unwrap_or_else(|| question.risk.0.to_string()),
         options: own.join("; "),
-        origin: format!("cells found in the workbook{grades_origin}; the rest are defaults"),
+        origin: format!("{FOUND}{cells}{grades_origin}; the rest are defaults"),
     }
 }
 

@@ -38,7 +38,7 @@ fn main() {
 /// Dates in the first column, random walks and noise in the others.
 fn write_book(path: &Path) {
     let mut workbook = Workbook::new();
-    let sheet = workbook.add_worksheet_with_constant_memory().expect("a sheet");
+    let sheet = workbook.add_worksheet();
     let date = Format::new().set_num_format("yyyy-mm-dd hh:mm");
     sheet.write(0, 0, "Taken").expect("a cell");
     for column in 1..COLUMNS {

@@ -169,6 +169,9 @@ fn left_out(look: &Look, column: &Column, cells: &Cells, sheet: &SheetCells, tab
     if look.filled == 0 {
         return Some(None);
     }
+    if column.heading.is_empty() && table.moments.is_none() {
+        return Some(Some("it has neither a heading nor dates beside it".into()));
+    }
     if look.dates * 2 > look.filled {
         return Some(Some("it holds dates".into()));
     }
