@@ -1,5 +1,10 @@
 //! What can be said of readings before any test: pairs, ranks, ties, runs, seasons.
 
+pub mod counts;
+pub mod events;
 pub mod pairs;
+pub mod shares;
 
+pub use events::{Events, Truncation};
 pub use pairs::{Pairing, Pairings};
+pub use shares::{Share, Shares};

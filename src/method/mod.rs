@@ -3,10 +3,12 @@
 //! To add a test: write its file, add its `mod` line and its line in [`METHODS`], and a folder of published examples
 //! under `tests/published`. Route, parser, help, OpenAPI, plan, sheet and page follow from the declaration.
 
+pub mod choices;
 pub mod declaration;
 pub mod outcome;
 pub mod question;
 
+pub mod cochran_armitage;
 pub mod cox_stuart;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
@@ -17,7 +19,8 @@ use declaration::{Arguments, Declared, Parameter, ParameterError};
 use crate::reading::Series;
 
 /// Every test, in the order in which they are listed.
-pub static METHODS: &[Registered] = &[Registered::new::<cox_stuart::CoxStuart>()];
+pub static METHODS: &[Registered] =
+    &[Registered::new::<cox_stuart::CoxStuart>(), Registered::new::<cochran_armitage::CochranArmitage>()];
 
 /// The test with a given key.
 pub fn find(key: &str) -> Option<&'static Registered> {

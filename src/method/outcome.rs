@@ -14,6 +14,17 @@ pub enum Direction {
     Neither,
 }
 
+impl Direction {
+    /// Rising if a statistic exceeds what is expected without a trend, falling if it is below.
+    pub fn of(deviation: f64) -> Self {
+        match deviation.partial_cmp(&0.0) {
+            Some(std::cmp::Ordering::Greater) => Direction::Rising,
+            Some(std::cmp::Ordering::Less) => Direction::Falling,
+            _ => Direction::Neither,
+        }
+    }
+}
+
 /// What a test found in a series.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Outcome {

@@ -5,6 +5,7 @@
 //! SciPy, statsmodels and R's base `stats`; `made_by` says which). `datasets.json` holds open series that they name,
 //! `tables.json` critical values and tail tables, each verified by enumeration.
 
+mod cochran_armitage;
 mod cox_stuart;
 mod family;
 mod reference;
