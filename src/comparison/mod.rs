@@ -3,8 +3,10 @@
 pub mod counts;
 pub mod events;
 pub mod pairs;
+pub mod rates;
 pub mod shares;
 
 pub use events::{Events, Truncation};
 pub use pairs::{Pairing, Pairings};
+pub use rates::{Rate, Rates};
 pub use shares::{Share, Shares};

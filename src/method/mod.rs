@@ -10,6 +10,7 @@ pub mod question;
 
 pub mod cochran_armitage;
 pub mod cox_stuart;
+pub mod poisson_trend;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
 pub use question::{Question, Seek};
@@ -19,8 +20,11 @@ use declaration::{Arguments, Declared, Parameter, ParameterError};
 use crate::reading::Series;
 
 /// Every test, in the order in which they are listed.
-pub static METHODS: &[Registered] =
-    &[Registered::new::<cox_stuart::CoxStuart>(), Registered::new::<cochran_armitage::CochranArmitage>()];
+pub static METHODS: &[Registered] = &[
+    Registered::new::<cox_stuart::CoxStuart>(),
+    Registered::new::<cochran_armitage::CochranArmitage>(),
+    Registered::new::<poisson_trend::PoissonTrend>(),
+];
 
 /// The test with a given key.
 pub fn find(key: &str) -> Option<&'static Registered> {

@@ -8,4 +8,5 @@
 mod cochran_armitage;
 mod cox_stuart;
 mod family;
+mod poisson_trend;
 mod reference;
