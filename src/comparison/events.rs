@@ -11,6 +11,16 @@ pub enum Truncation {
     Failure,
 }
 
+impl Truncation {
+    /// What ended the observation, in words.
+    pub fn word(self) -> &'static str {
+        match self {
+            Truncation::Time => "a fixed time",
+            Truncation::Failure => "the last event",
+        }
+    }
+}
+
 /// Events in the order in which they happened, the observation starting at time 0.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Events {

@@ -2,11 +2,13 @@
 
 pub mod counts;
 pub mod events;
+pub mod order;
 pub mod pairs;
 pub mod rates;
 pub mod shares;
 
 pub use events::{Events, Truncation};
+pub use order::Order;
 pub use pairs::{Pairing, Pairings};
 pub use rates::{Rate, Rates};
 pub use shares::{Share, Shares};

@@ -2,6 +2,7 @@
 
 use super::Refusal;
 use super::declaration::List;
+use crate::comparison::Events;
 use crate::comparison::counts::beside;
 use crate::reading::Series;
 
@@ -12,6 +13,20 @@ crate::choices! {
         Times = "times",
         /// Gaps between events, the first one counted from the start of observation.
         Gaps = "gaps",
+    }
+}
+
+impl ReadingsAre {
+    /// The events that the readings tell of.
+    ///
+    /// # Errors
+    /// The readings are no times or gaps, and why.
+    pub fn events(self, series: &Series, end: Option<f64>) -> Result<Events, Refusal> {
+        let events = match self {
+            ReadingsAre::Times => Events::of_times(series, end),
+            ReadingsAre::Gaps => Events::of_gaps(series, end),
+        };
+        events.map_err(|error| Refusal::Because(error.to_string()))
     }
 }
 

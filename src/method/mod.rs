@@ -10,7 +10,10 @@ pub mod question;
 
 pub mod cochran_armitage;
 pub mod cox_stuart;
+pub mod laplace;
+pub mod military_handbook;
 pub mod poisson_trend;
+pub mod reverse_arrangements;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
 pub use question::{Question, Seek};
@@ -24,6 +27,9 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<cox_stuart::CoxStuart>(),
     Registered::new::<cochran_armitage::CochranArmitage>(),
     Registered::new::<poisson_trend::PoissonTrend>(),
+    Registered::new::<laplace::Laplace>(),
+    Registered::new::<military_handbook::MilitaryHandbook>(),
+    Registered::new::<reverse_arrangements::ReverseArrangements>(),
 ];
 
 /// The test with a given key.

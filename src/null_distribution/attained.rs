@@ -24,7 +24,11 @@ impl Attained {
     }
 
     /// From tails that are known; two-sided is twice the smaller tail.
+    ///
+    /// A tail below 2.2e-308, the smallest number that is kept to full precision, is given as that number, so that no p
+    /// is ever 0.
     pub fn doubled(tails: Tails, extremes: Tails, by: By) -> Self {
+        let tails = Tails { lower: tails.lower.max(f64::MIN_POSITIVE), upper: tails.upper.max(f64::MIN_POSITIVE) };
         Attained { tails, either: tails.doubled(), extremes, least_either: extremes.doubled(), by }
     }
 
@@ -36,7 +40,7 @@ impl Attained {
             null.chance_of(|point| (point as f64 - centre).abs() >= far)
         };
         let least_either = either(null.lowest()).min(either(null.highest()));
-        Attained { either: either(value), least_either, ..Attained::exact(null, value) }
+        Attained { either: either(value).max(f64::MIN_POSITIVE), least_either, ..Attained::exact(null, value) }
     }
 
     /// From the normal approximation: the statistic less its mean, the lowest and highest values less the mean, the

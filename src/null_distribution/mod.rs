@@ -10,10 +10,12 @@ pub mod crossing;
 pub mod lattice;
 pub mod normal;
 pub mod probability;
+pub mod q_multinomial;
 pub mod score_total;
 pub mod signed_weights;
 pub mod sum_of_uniforms;
 pub mod tilted;
+pub mod truncated_exponential;
 
 pub use attained::Attained;
 pub use chi_square::ChiSquare;

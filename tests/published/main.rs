@@ -7,6 +7,7 @@
 
 mod cochran_armitage;
 mod cox_stuart;
+mod event_trend;
 mod family;
 mod poisson_trend;
 mod reference;
