@@ -2,12 +2,15 @@
 
 pub mod counts;
 pub mod events;
+pub mod groups;
 pub mod order;
 pub mod pairs;
+pub mod ranked_blocks;
 pub mod rates;
 pub mod shares;
 
 pub use events::{Events, Truncation};
+pub use groups::{Concordance, Groups};
 pub use order::Order;
 pub use pairs::{Pairing, Pairings};
 pub use rates::{Rate, Rates};

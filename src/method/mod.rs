@@ -10,8 +10,10 @@ pub mod question;
 
 pub mod cochran_armitage;
 pub mod cox_stuart;
+pub mod jonckheere_terpstra;
 pub mod laplace;
 pub mod military_handbook;
+pub mod page;
 pub mod poisson_trend;
 pub mod reverse_arrangements;
 
@@ -25,6 +27,8 @@ use crate::reading::Series;
 /// Every test, in the order in which they are listed.
 pub static METHODS: &[Registered] = &[
     Registered::new::<cox_stuart::CoxStuart>(),
+    Registered::new::<jonckheere_terpstra::JonckheereTerpstra>(),
+    Registered::new::<page::Page>(),
     Registered::new::<cochran_armitage::CochranArmitage>(),
     Registered::new::<poisson_trend::PoissonTrend>(),
     Registered::new::<laplace::Laplace>(),

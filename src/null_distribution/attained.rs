@@ -18,9 +18,10 @@ pub struct Attained {
 }
 
 impl Attained {
-    /// From the exact null distribution; two-sided is twice the smaller tail.
+    /// From the exact null distribution; two-sided is twice the smaller tail. A value between two points of the
+    /// distribution, as when ties are ignored, is judged on the safe side.
     pub fn exact(null: &Lattice, value: i64) -> Self {
-        Attained::doubled(null.tails(value), null.extremes(), By::Exact)
+        Attained::doubled(null.safe_tails(value), null.extremes(), By::Exact)
     }
 
     /// From tails that are known; two-sided is twice the smaller tail.

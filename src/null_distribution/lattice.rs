@@ -57,6 +57,13 @@ impl Lattice {
         Tails { lower: lower.min(1.0), upper: upper.min(1.0) }
     }
 
+    /// Both tails of a value, on the safe side where it lies between two points: each tail then includes the point beyond it.
+    pub fn safe_tails(&self, value: i64) -> Tails {
+        let past = (value - self.first).rem_euclid(self.step);
+        let (below, above) = (value - past, if past == 0 { value } else { value - past + self.step });
+        Tails { lower: self.tails(above).lower, upper: self.tails(below).upper }
+    }
+
     /// The chances of the lowest and of the highest value: the smallest tails that can be reached.
     pub fn extremes(&self) -> Tails {
         let chance = |end: Option<&f64>| end.map_or(1.0, |mass| mass.min(1.0));
@@ -66,6 +73,11 @@ impl Lattice {
     /// The chance of all values for which `counts` says yes.
     pub fn chance_of(&self, counts: impl Fn(i64) -> bool) -> f64 {
         self.points().filter(|&(point, _)| counts(point)).map(|(_, mass)| mass).sum::<f64>().min(1.0)
+    }
+
+    /// The distribution of the statistic times a positive whole number.
+    pub fn times(self, factor: i64) -> Lattice {
+        Lattice { first: self.first * factor, step: self.step * factor, mass: self.mass }
     }
 
     /// The distribution of the sum of this statistic and an independent one with the same step.
@@ -111,5 +123,6 @@ mod tests {
     fn values_between_the_points_belong_to_no_point() {
         let coin = Lattice::new(-1, 2, vec![0.5, 0.5]);
         assert_eq!((coin.tails(0).lower, coin.tails(0).upper, coin.mass(0)), (0.5, 0.5, 0.0));
+        assert_eq!((coin.safe_tails(0).lower, coin.safe_tails(0).upper, coin.safe_tails(1).upper), (1.0, 1.0, 0.5));
     }
 }

@@ -9,5 +9,7 @@ mod cochran_armitage;
 mod cox_stuart;
 mod event_trend;
 mod family;
+mod jonckheere_terpstra;
+mod page;
 mod poisson_trend;
 mod reference;

@@ -76,6 +76,6 @@ fn refusals() {
     assert!(refuse(json!({ "readings": [3, -4] })).contains("reading 2 is -4"));
     assert!(refuse(json!({ "readings": "3;<5;4" })).contains("reading 2 is the limit <5"));
     assert!(refuse(json!({ "readings": [30000, 40000, 5000], "p_by": "exact" })).contains("at most"));
-    let irregular = json!({ "readings": [3, 4, 5], "scores": [1, 2.2360679, 3.1415926535], "p_by": "exact" });
+    let irregular = json!({ "readings": [3, 4, 5], "scores": [1, 2.2360679, 3.7320508], "p_by": "exact" });
     assert!(refuse(irregular).contains("common step"));
 }
