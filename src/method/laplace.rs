@@ -100,7 +100,7 @@ impl Method for Laplace {
         let m = free.len();
         let sum: f64 = free.iter().map(|time| time / events.end).sum();
         let below_top: f64 = free.iter().map(|time| (events.end - time) / events.end).sum();
-        let deviation = (sum - below_top) / 2.0;
+        let deviation = free.iter().map(|time| (time - events.end / 2.0) / events.end).sum::<f64>();
         let variance = m as f64 / 12.0;
         let u = deviation / variance.sqrt();
         let attained = if parameters.p_by.is_exact("events", m, MOST_UNIFORMS)? {

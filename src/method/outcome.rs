@@ -15,12 +15,15 @@ pub enum Direction {
 }
 
 impl Direction {
-    /// Rising if a statistic exceeds what is expected without a trend, falling if it is below.
-    pub fn of(deviation: f64) -> Self {
-        match deviation.partial_cmp(&0.0) {
-            Some(std::cmp::Ordering::Greater) => Direction::Rising,
-            Some(std::cmp::Ordering::Less) => Direction::Falling,
-            _ => Direction::Neither,
+    /// Rising if a statistic exceeds what is expected without a trend, falling if it is below. Less than a thousand
+    /// millionth of a standard deviation is rounding.
+    pub fn of(standardised: f64) -> Self {
+        if standardised > 1e-9 {
+            Direction::Rising
+        } else if standardised < -1e-9 {
+            Direction::Falling
+        } else {
+            Direction::Neither
         }
     }
 }
