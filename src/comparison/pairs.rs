@@ -2,7 +2,7 @@
 
 use std::cmp::Ordering;
 
-use crate::reading::Series;
+use crate::reading::{Blocks, Series};
 
 /// An earlier and a later reading, and how they compare.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -20,7 +20,7 @@ pub struct Pairing {
 /// The pairings of a series and what they add up to.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub struct Pairings {
-    /// The pairings in the order of the earlier reading.
+    /// The pairings block by block, each in the order of the earlier reading.
     pub list: Vec<Pairing>,
     /// Readings that no pairing uses although they have a value, as indices from 0.
     pub left_out: Vec<u32>,
@@ -68,30 +68,32 @@ pub fn weighted_ends(n: usize) -> Vec<(usize, usize, u32)> {
     (0..n / 2).map(|i| (i, n - 1 - i, (n - 1 - 2 * i) as u32)).collect()
 }
 
-/// Pairs a series by a pattern.
+/// Pairs a series by a pattern, within each block where the series has blocks.
 ///
 /// With `close_gaps`, missing readings are taken out before pairing; without, the pattern is laid over all places and a
 /// pair whose partner is missing falls out.
 pub fn pair(series: &Series, pattern: Pattern, close_gaps: bool) -> Pairings {
-    let places: Vec<u32> =
-        if close_gaps { series.present().map(|(index, _)| index as u32).collect() } else { (0..series.len() as u32).collect() };
+    let whole = || vec![(0..series.len()).collect()];
+    let blocks: Vec<Vec<usize>> = series.blocks.as_ref().map_or_else(whole, Blocks::members);
     let mut used = vec![false; series.len()];
     let mut pairings = Pairings::default();
-    for (earlier, later, weight) in pattern(places.len()) {
-        let (earlier, later) = (places[earlier], places[later]);
-        let (first, second) = (series.values[earlier as usize], series.values[later as usize]);
-        let Some(order) = first.compare(second) else {
-            pairings.incomplete += 1;
-            continue;
-        };
-        let sign = match order {
-            Ordering::Less => 1,
-            Ordering::Equal => 0,
-            Ordering::Greater => -1,
-        };
-        used[earlier as usize] = true;
-        used[later as usize] = true;
-        pairings.list.push(Pairing { earlier, later, sign, weight });
+    for members in blocks {
+        let places: Vec<usize> = members.into_iter().filter(|&index| !close_gaps || !series.values[index].is_missing()).collect();
+        for (earlier, later, weight) in pattern(places.len()) {
+            let (earlier, later) = (places[earlier], places[later]);
+            let Some(order) = series.values[earlier].compare(series.values[later]) else {
+                pairings.incomplete += 1;
+                continue;
+            };
+            let sign = match order {
+                Ordering::Less => 1,
+                Ordering::Equal => 0,
+                Ordering::Greater => -1,
+            };
+            used[earlier] = true;
+            used[later] = true;
+            pairings.list.push(Pairing { earlier: earlier as u32, later: later as u32, sign, weight });
+        }
     }
     pairings.left_out = series.present().map(|(index, _)| index as u32).filter(|&index| !used[index as usize]).collect();
     pairings
@@ -120,5 +122,15 @@ mod tests {
     fn ends_weigh_their_distance() {
         assert_eq!(weighted_ends(6), [(0, 5, 5), (1, 4, 3), (2, 3, 1)]);
         assert_eq!(weighted_ends(5), [(0, 4, 4), (1, 3, 2)]);
+    }
+
+    #[test]
+    fn pairs_are_made_within_blocks() {
+        let mut series = Series::of_numbers(&[1.0, 10.0, 2.0, 9.0, 3.0, 8.0, 0.0]);
+        series.blocks = Some(Blocks::of_labels(["a", "b", "a", "b", "a", "b", "a"]));
+        let pairings = pair(&series, halves, true);
+        let found: Vec<(u32, u32, i8)> = pairings.list.iter().map(|pair| (pair.earlier, pair.later, pair.sign)).collect();
+        assert_eq!(found, [(0, 4, 1), (2, 6, -1), (1, 5, -1)]);
+        assert_eq!(pairings.left_out, [3]);
     }
 }

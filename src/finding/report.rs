@@ -110,6 +110,9 @@ fn pairings_table(pairings: &Pairings, series: &Series) -> Table {
     if weighted {
         columns.push(Column { key: "weight", label: "Weight" });
     }
+    if series.blocks.is_some() {
+        columns.push(Column { key: "block", label: "Block" });
+    }
     let value = |index: usize| match series.values[index].number() {
         Some(number) if series.scale.grades().is_none() => Datum::Number(number),
         _ => Datum::Text(series.show(index)),
@@ -128,6 +131,9 @@ fn pairings_table(pairings: &Pairings, series: &Series) -> Table {
         ];
         if weighted {
             cells.push(pairing.weight.into());
+        }
+        if let Some(blocks) = &series.blocks {
+            cells.push(blocks.label(blocks.block(earlier)).into());
         }
         cells
     });

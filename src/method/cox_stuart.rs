@@ -7,6 +7,9 @@
 //! Variants of the 1955 paper: the last third against the first third (S3 there), and the sum of signs weighted by
 //! distance (S1 there), whose exact null distribution counts the subsets of the weights.
 //!
+//! Where readings come in blocks, of several places, seasons or persons, pairs are made within each block and their signs
+//! are counted together: the blocks' numbers of rises are independent binomials with the same chance, so their sum is one.
+//!
 //! # Which variant
 //! Halves use all readings and are the usual form. Thirds compare readings that lie further apart: fewer pairs, but
 //! each more telling. The weighted sum is the most powerful of the three against a steady drift.
@@ -17,12 +20,15 @@
 
 use super::declaration::{Count, Proportion};
 use super::question::PBy;
-use super::{Card, Claim, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Seek, Source, Statistic};
+use super::{
+    Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Seek, Source,
+    Statistic, Table,
+};
 use crate::comparison::pairs::{self, Pairings};
 use crate::null_distribution::binomial::{Binomial, exact_interval};
 use crate::null_distribution::signed_weights::{MOST_WEIGHTS, SignedWeights};
 use crate::null_distribution::{By, Tails, normal};
-use crate::reading::Series;
+use crate::reading::{Blocks, Series};
 
 crate::choices! {
     /// Which readings are compared.
@@ -108,14 +114,17 @@ impl Method for CoxStuart {
         least_readings: 2,
         exact: "Halves and thirds: always. Weighted: up to 1,000 untied pairs.",
         assumes: &[
-            "The readings are independent of each other, apart from a trend.",
+            "The readings are independent of each other, apart from a trend; with blocks, also between blocks.",
             "Readings can be ordered; their differences need not mean anything.",
             "Seek and risk were declared before looking, and the series is judged once.",
         ],
         ties: "Equal pairs are dropped, counted against the direction sought, or split; how many there were is always said.",
         missing: "Gaps are closed before pairing, or kept so that incomplete pairs fall out. Limits such as <0.5 are compared where the order is certain and tie where it is not.",
         cost: "n; weighted: n cubed within the exact range",
-        fits_better: &[],
+        fits_better: &[
+            ("page", "the same places or persons are read at every one of a few moments"),
+            ("jonckheere-terpstra", "there are several independent readings at each moment"),
+        ],
         sources: &[
             Source {
                 authors: "D. R. Cox and A. Stuart",
@@ -137,7 +146,7 @@ impl Method for CoxStuart {
             },
         ],
         repeated_moments: false,
-        blocks: false,
+        blocks: true,
     };
 
     fn judge(series: &Series, question: &Question, parameters: &Parameters) -> Result<Outcome, Refusal> {
@@ -183,6 +192,7 @@ impl Method for CoxStuart {
         }
         let used = 2 * pairings.list.len();
         let cautions = cautions(&signs, &pairings, series, parameters);
+        let by_block = series.blocks.as_ref().map(|blocks| by_block(&pairings, blocks));
         Ok(Outcome {
             statistic: Statistic { name: if parameters.pairs == PairBy::Weighted { "S" } else { "T" }, value: judged.statistic },
             p,
@@ -190,7 +200,7 @@ impl Method for CoxStuart {
             smallest_p: Some(judged.smallest(question.seek)),
             readings_used: used,
             facts,
-            evidence: vec![Evidence::Pairings(pairings)],
+            evidence: by_block.into_iter().map(Evidence::Table).chain([Evidence::Pairings(pairings)]).collect(),
             cautions,
         })
     }
@@ -350,6 +360,23 @@ fn chance_to_notice(trials: u64, share: f64, side: f64, seek: Seek) -> f64 {
     }
 }
 
+/// How the pairs of each block compare.
+fn by_block(pairings: &Pairings, blocks: &Blocks) -> Table {
+    let mut counts = vec![[0_u64; 3]; blocks.count()];
+    for pairing in &pairings.list {
+        counts[blocks.block(pairing.earlier as usize)][(1 - pairing.sign) as usize] += 1;
+    }
+    let columns = [("block", "Block"), ("pairs", "Pairs compared"), ("rises", "Rises"), ("falls", "Falls"), ("ties", "Ties")];
+    let rows = counts.iter().enumerate().map(|(block, &[rises, ties, falls])| -> Vec<Datum> {
+        vec![blocks.label(block).into(), (rises + ties + falls).into(), rises.into(), falls.into(), ties.into()]
+    });
+    Table {
+        caption: "Pairs within each block".into(),
+        rows: rows.collect(),
+        columns: columns.map(|(key, label)| Column { key, label }).to_vec(),
+    }
+}
+
 fn no_pairs(series: &Series, parameters: &Parameters, pairings: &Pairings) -> Refusal {
     let have = series.count_present();
     if pairings.incomplete > 0 {
@@ -357,6 +384,9 @@ fn no_pairs(series: &Series, parameters: &Parameters, pairings: &Pairings) -> Re
             "each of the {} pairs lacks a reading; with gaps=close the {have} readings that are there would be paired",
             pairings.incomplete
         ));
+    }
+    if let Some(blocks) = &series.blocks {
+        return Refusal::Because(format!("none of the {} blocks has enough readings to make a pair", blocks.count()));
     }
     Refusal::TooFewReadings {
         have,
@@ -374,6 +404,12 @@ fn cautions(signs: &Signs, pairings: &Pairings, series: &Series, parameters: &Pa
             Ties::Split => "half of each was counted as a rise",
         };
         cautions.push(format!("{} of {compared} pairs are ties; {treatment}.", signs.ties));
+    }
+    if let Some(blocks) = &series.blocks {
+        cautions.push(format!(
+            "The pairs of {} blocks were counted together; if blocks rise and fall together for other reasons than a trend, p is too small.",
+            blocks.count()
+        ));
     }
     if pairings.incomplete > 0 {
         cautions.push(format!("{} pairs fell out because a reading is missing.", pairings.incomplete));

@@ -3,11 +3,19 @@
 //! To add a test: write its file, add its `mod` line and its line in [`METHODS`], and a folder of published examples
 //! under `tests/published`. Route, parser, help, OpenAPI, plan, sheet and page follow from the declaration.
 
+pub mod choices;
 pub mod declaration;
 pub mod outcome;
 pub mod question;
 
+pub mod cochran_armitage;
 pub mod cox_stuart;
+pub mod jonckheere_terpstra;
+pub mod laplace;
+pub mod military_handbook;
+pub mod page;
+pub mod poisson_trend;
+pub mod reverse_arrangements;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
 pub use question::{Question, Seek};
@@ -17,7 +25,16 @@ use declaration::{Arguments, Declared, Parameter, ParameterError};
 use crate::reading::Series;
 
 /// Every test, in the order in which they are listed.
-pub static METHODS: &[Registered] = &[Registered::new::<cox_stuart::CoxStuart>()];
+pub static METHODS: &[Registered] = &[
+    Registered::new::<cox_stuart::CoxStuart>(),
+    Registered::new::<jonckheere_terpstra::JonckheereTerpstra>(),
+    Registered::new::<page::Page>(),
+    Registered::new::<cochran_armitage::CochranArmitage>(),
+    Registered::new::<poisson_trend::PoissonTrend>(),
+    Registered::new::<laplace::Laplace>(),
+    Registered::new::<military_handbook::MilitaryHandbook>(),
+    Registered::new::<reverse_arrangements::ReverseArrangements>(),
+];
 
 /// The test with a given key.
 pub fn find(key: &str) -> Option<&'static Registered> {

@@ -14,6 +14,20 @@ pub enum Direction {
     Neither,
 }
 
+impl Direction {
+    /// Rising if a statistic exceeds what is expected without a trend, falling if it is below. Less than a thousand
+    /// millionth of a standard deviation is rounding.
+    pub fn of(standardised: f64) -> Self {
+        if standardised > 1e-9 {
+            Direction::Rising
+        } else if standardised < -1e-9 {
+            Direction::Falling
+        } else {
+            Direction::Neither
+        }
+    }
+}
+
 /// What a test found in a series.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Outcome {

@@ -135,18 +135,22 @@ fn share_with_upper_tail(count: u64, trials: u64, tail: f64) -> f64 {
     share
 }
 
-/// ln(n!) less Stirling's formula. Exact factorials below 16, the asymptotic series above.
-fn stirling_error(n: f64) -> f64 {
+/// ln(gamma(n + 1)) less Stirling's formula, for whole or half n. Exact products below 16, the asymptotic series above.
+pub(super) fn stirling_error(n: f64) -> f64 {
     if n < 16.0 {
-        let factorial: f64 = (2..=n as u32).map(f64::from).product();
-        return factorial.ln() - (n + 0.5) * n.ln() + n - 0.5 * (2.0 * PI).ln();
+        let (mut gamma, mut factor) = (if n.fract() == 0.0 { 1.0 } else { PI.sqrt() }, n);
+        while factor > 0.0 {
+            gamma *= factor;
+            factor -= 1.0;
+        }
+        return gamma.ln() - (n + 0.5) * n.ln() + n - 0.5 * (2.0 * PI).ln();
     }
     let square = n * n;
     (1.0 / 12.0 - (1.0 / 360.0 - (1.0 / 1260.0 - (1.0 / 1680.0 - 1.0 / 1188.0 / square) / square) / square) / square) / n
 }
 
 /// x ln(x/m) + m - x without cancellation near x = m.
-fn deviance(x: f64, mean: f64) -> f64 {
+pub(super) fn deviance(x: f64, mean: f64) -> f64 {
     if (x - mean).abs() < 0.1 * (x + mean) {
         let v = (x - mean) / (x + mean);
         let mut sum = (x - mean) * v;

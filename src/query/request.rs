@@ -105,10 +105,13 @@ fn series(recorded: Recorded, card: &Card) -> Result<(Series, Understood), Probl
     Ok((Series { name, unit: recorded.unit, scale, values, moments: Arc::new(moments), blocks }, understood))
 }
 
-/// Blocks from their own list, or from the columns of a range: one row a moment, one column a block.
+/// Blocks from their own list, or from the columns of a range: one row a moment, one column a block. For a test that takes
+/// several readings at a moment and no blocks, the columns are just further readings.
 fn blocks(sent: List, readings: usize, columns: usize, card: &Card) -> Result<Option<Blocks>, Problem> {
+    let further_readings = card.repeated_moments && !card.blocks;
     let labels: Vec<String> = match (sent.cells, columns) {
         (None, 1) => return Ok(None),
+        (None, _) if further_readings => return Ok(None),
         (None, _) => (0..readings).map(|index| (index % columns + 1).to_string()).collect(),
         (Some(cells), _) if cells.len() == readings => cells.iter().map(Cell::quote).collect(),
         (Some(cells), _) if columns > 1 && cells.len() == columns => {

@@ -128,3 +128,23 @@ fn sign_test_table() {
     }
     assert!(checked > 100, "only {checked} entries of the table were checked");
 }
+
+/// Blocks as one range and as one list: pairs within blocks, signs pooled, binomial p by Pascal's triangle.
+#[test]
+fn blocks_are_paired_by_themselves() {
+    let range = json!({ "readings": [[1, 30, 7], [2, 20, 7], [3, 40, 8], [4, 50, 5], [9, 60, 9]], "seek": "rising" });
+    let (_, outcome) = ask("cox-stuart", range);
+    let outcome = outcome.unwrap();
+    let signs = ["pairs", "rises", "falls", "ties"].map(|key| fact(&outcome, key));
+    assert_eq!(signs, [6.0, 5.0, 1.0, 0.0], "pairs (1, 4) and (2, 5) of each column: 1-4, 2-9, 30-50, 20-60, 7-5, 7-9");
+    close(outcome.p.value, &json!(7.0 / 64.0), 1e-14, "p");
+    let list = json!({
+        "readings": [1, 2, 3, 4, 9, 30, 20, 40, 50, 60, 7, 7, 8, 5, 9], "seek": "rising",
+        "blocks": ["a", "a", "a", "a", "a", "b", "b", "b", "b", "b", "c", "c", "c", "c", "c"],
+    });
+    assert_eq!(ask("cox-stuart", list).1.unwrap().p, outcome.p);
+    let single = json!({ "readings": [[1, 2, 3]] });
+    assert!(ask("cox-stuart", single).1.is_ok(), "a single row is one series");
+    let apart = json!({ "readings": [1, 2], "blocks": ["a", "b"] });
+    assert!(ask("cox-stuart", apart).1.unwrap_err().to_string().contains("none of the 2 blocks"));
+}

@@ -5,6 +5,11 @@
 //! SciPy, statsmodels and R's base `stats`; `made_by` says which). `datasets.json` holds open series that they name,
 //! `tables.json` critical values and tail tables, each verified by enumeration.
 
+mod cochran_armitage;
 mod cox_stuart;
+mod event_trend;
 mod family;
+mod jonckheere_terpstra;
+mod page;
+mod poisson_trend;
 mod reference;

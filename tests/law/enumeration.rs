@@ -1,0 +1,158 @@
+//! The exact p against counting every arrangement of short series, one by one.
+
+use risefall::method::{Claim, METHODS, Outcome, Registered, ScaleNeeded, Seek};
+use risefall::null_distribution::By;
+use risefall::reading::Value;
+
+use crate::inputs::{Input, Ties, directions};
+use crate::random::Random;
+
+/// What is equally probable if there is no trend.
+enum Arrangements {
+    /// All orders of the readings.
+    Orders,
+    /// All orders within each block.
+    OrdersWithinBlocks,
+    /// All ways to exchange the two readings of each pair.
+    ExchangesWithinPairs,
+    /// All ways to place the events among the trials.
+    EventsAmongTrials,
+    /// All moments for each event.
+    MomentsOfEvents,
+}
+
+/// Which arrangements a test counts, and the sign that makes its statistic grow with a rise.
+///
+/// Tests that are not listed count all orders, if order is enough for them.
+fn arrangements(method: &Registered) -> Option<(Arrangements, f64)> {
+    Some(match (method.card.key, method.card.scale) {
+        ("cox-stuart", _) => (Arrangements::ExchangesWithinPairs, 1.0),
+        ("page", _) => (Arrangements::OrdersWithinBlocks, 1.0),
+        ("cochran-armitage", _) => (Arrangements::EventsAmongTrials, 1.0),
+        ("poisson-trend", _) => (Arrangements::MomentsOfEvents, 1.0),
+        ("reverse-arrangements", _) => (Arrangements::Orders, -1.0),
+        (key, _) if EXEMPT.iter().any(|(name, _)| *name == key) => return None,
+        (_, ScaleNeeded::Ordered) if method.card.claim == Claim::Trend => (Arrangements::Orders, 1.0),
+        _ => return None,
+    })
+}
+
+/// Tests whose p is not a count of arrangements by their own statistic, and why.
+const EXEMPT: [(&str, &str); 2] = [
+    ("laplace", "times are continuous; checked against exact rationals in null_distribution::sum_of_uniforms"),
+    ("military-handbook", "times are continuous; checked against high precision in null_distribution::chi_square"),
+];
+
+#[test]
+fn exact_p_is_the_share_of_all_arrangements() {
+    for (number, method) in METHODS.iter().enumerate() {
+        let Some((arrangements, sign)) = arrangements(method) else { continue };
+        let mut random = Random::seeded(1_000 + number as u64);
+        let mut checked = 0;
+        for n in [2, 3, 5, 6, 7] {
+            for round in 0..4 {
+                let ties = if round % 2 == 0 { Ties::Heavy } else { Ties::None };
+                let input = small(method, &mut random, n, ties).with(method, "p_by", "exact");
+                let Ok(outcome) = input.judge(method, Seek::Either) else { continue };
+                if outcome.p.by == By::Exact {
+                    check(method, &input, &outcome, &arrangements, sign);
+                    checked += 1;
+                }
+            }
+        }
+        assert!(checked >= 8, "{}: only {checked} inputs could be judged exactly", method.card.key);
+    }
+}
+
+/// Random readings small enough that all arrangements can be counted.
+fn small(method: &Registered, random: &mut Random, n: usize, ties: Ties) -> Input {
+    let mut input = Input::random(method, random, n, ties);
+    if method.card.scale == ScaleNeeded::Counts {
+        let trials = input.beside.iter_mut().find(|(name, _)| *name == "trials");
+        match trials {
+            Some((_, trials)) => {
+                trials.iter_mut().for_each(|size| *size = 1.0 + random.whole(3) as f64);
+                input.values = trials.iter().map(|&size| Value::Number(random.whole(size as usize + 1) as f64)).collect();
+            }
+            None => input.values = (0..n).map(|_| Value::Number((random.whole(4) / 2) as f64)).collect(),
+        }
+    }
+    input
+}
+
+/// Judges every arrangement and compares the shares at least as high and at least as low with the tails.
+fn check(method: &Registered, input: &Input, outcome: &Outcome, arrangements: &Arrangements, sign: f64) {
+    let observed = sign * outcome.statistic.value;
+    let (mut all, mut high, mut low) = (0.0, 0.0, 0.0);
+    let mut visit = |arranged: &Input| {
+        let arranged = arranged.judge(method, Seek::Either).unwrap_or_else(|refusal| panic!("{}: {refusal}", method.card.key));
+        let statistic = sign * arranged.statistic.value;
+        all += 1.0;
+        high += f64::from(u8::from(statistic >= observed - 1e-9));
+        low += f64::from(u8::from(statistic <= observed + 1e-9));
+    };
+    let n = input.values.len();
+    match arrangements {
+        Arrangements::Orders => orders(&mut (0..n).collect(), 0, &mut |order| visit(&input.rearranged(order))),
+        Arrangements::OrdersWithinBlocks => {
+            let blocks = input.blocks.clone().unwrap();
+            orders(&mut (0..n).collect(), 0, &mut |order| {
+                if order.iter().enumerate().all(|(place, &index)| blocks[place] == blocks[index]) {
+                    visit(&input.rearranged(order));
+                }
+            });
+        }
+        Arrangements::ExchangesWithinPairs => {
+            let lag = n.div_ceil(2);
+            for exchanged in 0..1_usize << (n / 2) {
+                let mut order: Vec<usize> = (0..n).collect();
+                (0..n / 2).filter(|pair| exchanged >> pair & 1 == 1).for_each(|pair| order.swap(pair, pair + lag));
+                visit(&input.rearranged(&order));
+            }
+        }
+        Arrangements::EventsAmongTrials => {
+            let trials: Vec<usize> = input.beside[0].1.iter().map(|&size| size as usize).collect();
+            let moment: Vec<usize> = trials.iter().enumerate().flat_map(|(moment, &size)| vec![moment; size]).collect();
+            let events = total(input);
+            for chosen in (0..1_usize << moment.len()).filter(|chosen| chosen.count_ones() as usize == events) {
+                let at = (0..moment.len()).filter(|trial| chosen >> trial & 1 == 1).map(|trial| moment[trial]);
+                visit(&counted(input, at));
+            }
+        }
+        Arrangements::MomentsOfEvents => {
+            let events = total(input);
+            for outcome in 0..n.pow(events as u32) {
+                let at = (0..events).map(|event| outcome / n.pow(event as u32) % n);
+                visit(&counted(input, at));
+            }
+        }
+    }
+    let (rising, falling) = directions(outcome).unwrap();
+    for (got, count, tail) in [(rising, high, "rising"), (falling, low, "falling")] {
+        let expected: f64 = count / all;
+        assert!((got - expected).abs() <= 1e-11 * expected, "{}, {tail}: {got} and {expected}, {input:?}", method.card.key);
+    }
+}
+
+fn total(input: &Input) -> usize {
+    input.values.iter().filter_map(|value| value.number()).sum::<f64>() as usize
+}
+
+/// The input with events counted at the given moments.
+fn counted(input: &Input, events: impl Iterator<Item = usize>) -> Input {
+    let mut counts = vec![0.0; input.values.len()];
+    events.for_each(|moment| counts[moment] += 1.0);
+    Input { values: counts.into_iter().map(Value::Number).collect(), ..input.clone() }
+}
+
+/// Visits all orders of a list.
+fn orders(list: &mut Vec<usize>, done: usize, visit: &mut dyn FnMut(&[usize])) {
+    if done == list.len() {
+        return visit(list);
+    }
+    for index in done..list.len() {
+        list.swap(done, index);
+        orders(list, done + 1, visit);
+        list.swap(done, index);
+    }
+}
