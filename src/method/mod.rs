@@ -6,8 +6,14 @@
 pub mod declaration;
 pub mod outcome;
 pub mod question;
+pub mod screen;
+pub mod turning;
 
 pub mod cox_stuart;
+pub mod difference_signs;
+pub mod runs_about_median;
+pub mod runs_up_down;
+pub mod turning_points;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
 pub use question::{Question, Seek};
@@ -17,7 +23,13 @@ use declaration::{Arguments, Declared, Parameter, ParameterError};
 use crate::reading::Series;
 
 /// Every test, in the order in which they are listed.
-pub static METHODS: &[Registered] = &[Registered::new::<cox_stuart::CoxStuart>()];
+pub static METHODS: &[Registered] = &[
+    Registered::new::<cox_stuart::CoxStuart>(),
+    Registered::new::<runs_about_median::RunsAboutMedian>(),
+    Registered::new::<runs_up_down::RunsUpDown>(),
+    Registered::new::<turning_points::TurningPoints>(),
+    Registered::new::<difference_signs::DifferenceSigns>(),
+];
 
 /// The test with a given key.
 pub fn find(key: &str) -> Option<&'static Registered> {

@@ -2,6 +2,7 @@
 
 use crate::comparison::Pairings;
 use crate::null_distribution::Probability;
+use crate::reading::Series;
 
 /// The direction in which a statistic points.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -12,6 +13,17 @@ pub enum Direction {
     Falling,
     /// Neither.
     Neither,
+}
+
+impl Direction {
+    /// Rising if a statistic exceeds what is expected without a trend, falling if it is below.
+    pub fn of(deviation: f64) -> Self {
+        match deviation.partial_cmp(&0.0) {
+            Some(std::cmp::Ordering::Greater) => Direction::Rising,
+            Some(std::cmp::Ordering::Less) => Direction::Falling,
+            _ => Direction::Neither,
+        }
+    }
 }
 
 /// What a test found in a series.
@@ -81,6 +93,16 @@ pub enum Datum {
     Number(f64),
     /// Words.
     Text(String),
+}
+
+impl Datum {
+    /// A reading's value: a number, or the words for a grade or a limit.
+    pub fn of_reading(series: &Series, index: usize) -> Self {
+        match series.values.get(index).and_then(|value| value.number()) {
+            Some(number) if series.scale.grades().is_none() => Datum::Number(number),
+            _ => Datum::Text(series.show(index)),
+        }
+    }
 }
 
 macro_rules! datum_from {

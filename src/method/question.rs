@@ -1,8 +1,8 @@
 //! What is asked of every test: which change counts as evidence, and the accepted risk.
 
-use super::Direction;
 use super::declaration::Proportion;
-use crate::null_distribution::{By, Probability, Tails};
+use super::{Direction, Fact, Refusal};
+use crate::null_distribution::{Attained, By, Probability, Tails};
 
 crate::choices! {
     /// Which change counts as evidence. It is declared before looking.
@@ -23,8 +23,22 @@ crate::choices! {
         Best = "best",
         /// Exact, or a refusal that states the largest size.
         Exact = "exact",
-        /// The normal approximation with continuity correction.
+        /// The normal approximation; the reply says whether it is corrected for continuity.
         Normal = "normal",
+    }
+}
+
+impl PBy {
+    /// Whether the exact null distribution is used, `have` being the size that it takes and `most` the largest admitted.
+    ///
+    /// # Errors
+    /// The exact p was asked for beyond that size.
+    pub fn is_exact(self, what: &'static str, have: usize, most: usize) -> Result<bool, Refusal> {
+        match self {
+            PBy::Normal => Ok(false),
+            PBy::Exact if have > most => Err(Refusal::BeyondExact { what, have, most }),
+            PBy::Best | PBy::Exact => Ok(have <= most),
+        }
     }
 }
 
@@ -47,6 +61,27 @@ impl Question {
             Seek::Falling => tails.lower.min(1.0),
         };
         Probability { value, by }
+    }
+
+    /// The p-value for what is sought, and the smallest one that could have been attained.
+    pub fn judge(&self, attained: &Attained) -> (Probability, f64) {
+        let pick = |tails: Tails, either: f64| match self.seek {
+            Seek::Either => either.min(1.0),
+            Seek::Rising => tails.upper.min(1.0),
+            Seek::Falling => tails.lower.min(1.0),
+        };
+        let value = pick(attained.tails, attained.either);
+        (Probability { value, by: attained.by }, pick(attained.extremes, attained.least_either))
+    }
+
+    /// The p-values for each thing that could have been sought, and the smallest p that could have been attained.
+    pub fn p_facts(&self, attained: &Attained) -> [Fact; 4] {
+        [
+            Fact::new("p_rising", "p if only a rise had been sought", attained.tails.upper.min(1.0)),
+            Fact::new("p_falling", "p if only a fall had been sought", attained.tails.lower.min(1.0)),
+            Fact::new("p_either", "p for either direction", attained.either.min(1.0)),
+            Fact::new("smallest_p", "Smallest p these readings could have given", self.judge(attained).1),
+        ]
     }
 
     /// Whether a direction is among those sought.

@@ -3,9 +3,22 @@
 //! A small tail is never one minus a large one: each tail is summed from its own far end inwards, so that a
 //! probability of 1e-40 keeps its digits.
 
+#[cfg(test)]
+mod arrangements;
+pub mod attained;
 pub mod binomial;
+pub mod hypergeometric;
+pub mod lattice;
 pub mod normal;
+mod pieces;
 pub mod probability;
+pub mod rank_products;
+pub mod rises;
+pub mod runs_of_two;
 pub mod signed_weights;
+pub mod strip;
+pub mod turns;
 
+pub use attained::Attained;
+pub use lattice::Lattice;
 pub use probability::{By, Probability, Tails};

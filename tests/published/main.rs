@@ -6,5 +6,8 @@
 //! `tables.json` critical values and tail tables, each verified by enumeration.
 
 mod cox_stuart;
+mod difference_signs;
 mod family;
 mod reference;
+mod runs_about_median;
+mod turning;

@@ -3,7 +3,7 @@
 use std::path::Path;
 
 use risefall::finding::Request;
-use risefall::method::declaration::{Argument, Arguments};
+use risefall::method::declaration::Arguments;
 use risefall::method::{Datum, Outcome, Refusal};
 use risefall::query::{Asked, read};
 use serde_json::Value;
@@ -57,9 +57,4 @@ pub fn close(got: f64, expected: &Value, relative: f64, what: &str) {
     let expected = expected.as_f64().unwrap_or_else(|| panic!("{what}: no reference value"));
     let error = (got - expected).abs();
     assert!(error <= relative * expected.abs() || got == expected, "{what}: got {got:e}, expected {expected:e}");
-}
-
-/// An argument as text.
-pub fn text(value: &str) -> Argument {
-    Argument::Text(value.into())
 }
