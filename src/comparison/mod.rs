@@ -1,6 +1,7 @@
 //! What can be said of readings before any test: pairs, ranks, ties, runs, seasons.
 
 pub mod median;
+pub mod midranks;
 pub mod order;
 pub mod pairs;
 pub mod runs;

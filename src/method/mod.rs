@@ -11,6 +11,7 @@ pub mod turning;
 
 pub mod cox_stuart;
 pub mod difference_signs;
+pub mod rank_von_neumann;
 pub mod runs_about_median;
 pub mod runs_up_down;
 pub mod turning_points;
@@ -28,6 +29,7 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<runs_about_median::RunsAboutMedian>(),
     Registered::new::<runs_up_down::RunsUpDown>(),
     Registered::new::<turning_points::TurningPoints>(),
+    Registered::new::<rank_von_neumann::RankVonNeumann>(),
     Registered::new::<difference_signs::DifferenceSigns>(),
 ];
 

@@ -42,7 +42,7 @@ impl TurnNull {
         let sizes = Order::of_values(&values).map(|order| order.sizes);
         let untied = sizes.as_ref().is_some_and(|sizes| sizes.len() == values.len());
         let law = match sizes {
-            Some(sizes) if ties == Ties::Corrected && !untied && turns::steps(&sizes, counted) <= turns::MOST_PRODUCTS => {
+            Some(sizes) if ties == Ties::Corrected && !untied && turns::steps(&sizes, counted) <= turns::MOST_STEPS => {
                 Law::Tied { sizes, readings: values.len() }
             }
             _ => {

@@ -69,7 +69,7 @@ impl Method for TurningPoints {
         claim: Claim::Pattern,
         scale: ScaleNeeded::Ordered,
         least_readings: 3,
-        exact: "Up to 2,000 readings without ties. With ties: up to 200 million products of chances, such as 200 readings with few ties, or 100 readings in three grades.",
+        exact: "Up to 2,000 readings without ties. With ties: up to 500 million products of chances, such as 300 readings of 150 values, or 200 readings in three grades; fewer with equal=strict.",
         assumes: &[
             "Apart from a pattern in time, the readings are independent and come from one distribution.",
             "Readings can be ordered; their differences need not mean anything.",

@@ -6,6 +6,7 @@
 #[cfg(test)]
 mod arrangements;
 pub mod attained;
+pub mod beta;
 pub mod binomial;
 pub mod hypergeometric;
 pub mod lattice;
@@ -13,6 +14,7 @@ pub mod normal;
 mod pieces;
 pub mod probability;
 pub mod rank_products;
+pub mod rank_steps;
 pub mod rises;
 pub mod runs_of_two;
 pub mod signed_weights;

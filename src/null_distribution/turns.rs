@@ -31,8 +31,11 @@ pub enum Counted {
 /// The most readings without ties for which the distribution is made; time grows with their square.
 pub const MOST_UNTIED: usize = 2_000;
 
-/// The most products that the distribution with equal readings may take; about half a second on one core.
-pub const MOST_PRODUCTS: f64 = 2e8;
+/// The most products that the distribution with equal readings may take; at most half a second on one core.
+pub const MOST_PRODUCTS: f64 = 5e8;
+
+/// The most steps that mean and variance with equal readings may take; about half a second on one core.
+pub const MOST_STEPS: f64 = 2e7;
 
 /// The number of turning points among `n` readings without ties, `n` at least 2.
 pub fn untied(n: usize) -> Lattice {
