@@ -113,20 +113,16 @@ fn pairings_table(pairings: &Pairings, series: &Series) -> Table {
     if series.blocks.is_some() {
         columns.push(Column { key: "block", label: "Block" });
     }
-    let value = |index: usize| match series.values[index].number() {
-        Some(number) if series.scale.grades().is_none() => Datum::Number(number),
-        _ => Datum::Text(series.show(index)),
-    };
     let rows = pairings.list.iter().enumerate().map(|(row, pairing)| {
         let (earlier, later) = (pairing.earlier as usize, pairing.later as usize);
         let mut cells: Vec<Datum> = vec![
             (row + 1).into(),
             (earlier + 1).into(),
             series.moments.label(earlier).into(),
-            value(earlier),
+            Datum::of_reading(series, earlier),
             (later + 1).into(),
             series.moments.label(later).into(),
-            value(later),
+            Datum::of_reading(series, later),
             pairing.sign.into(),
         ];
         if weighted {

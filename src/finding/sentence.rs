@@ -2,7 +2,7 @@
 
 use super::examine::Finding;
 use super::{Adjustment, Word};
-use crate::method::{Datum, Outcome, Refusal, Seek};
+use crate::method::{Claim, Datum, Outcome, Refusal, Seek};
 
 /// A number for reading: up to four significant digits, very small ones as powers of ten.
 pub fn number(value: f64) -> String {
@@ -49,10 +49,14 @@ fn judged(finding: &Finding, outcome: &Outcome) -> String {
             );
         }
         _ => {
-            let sought = match finding.question.seek {
-                Seek::Either => "A trend",
-                Seek::Rising => "A rise",
-                Seek::Falling => "A fall",
+            let sought = match (finding.card.claim, finding.question.seek) {
+                (Claim::Pattern, _) => "A pattern in the order of the readings",
+                (Claim::Change, Seek::Either) => "A change of level",
+                (Claim::Change, Seek::Rising) => "A change to a higher level",
+                (Claim::Change, Seek::Falling) => "A change to a lower level",
+                (Claim::Trend, Seek::Either) => "A trend",
+                (Claim::Trend, Seek::Rising) => "A rise",
+                (Claim::Trend, Seek::Falling) => "A fall",
             };
             return format!("{sought} is not shown{evidence} ({p}). This does not show that there is none.");
         }

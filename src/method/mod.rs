@@ -7,15 +7,22 @@ pub mod choices;
 pub mod declaration;
 pub mod outcome;
 pub mod question;
+pub mod screen;
+pub mod turning;
 
 pub mod cochran_armitage;
 pub mod cox_stuart;
+pub mod difference_signs;
 pub mod jonckheere_terpstra;
 pub mod laplace;
 pub mod military_handbook;
 pub mod page;
 pub mod poisson_trend;
+pub mod rank_von_neumann;
 pub mod reverse_arrangements;
+pub mod runs_about_median;
+pub mod runs_up_down;
+pub mod turning_points;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
 pub use question::{Question, Seek};
@@ -34,6 +41,11 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<laplace::Laplace>(),
     Registered::new::<military_handbook::MilitaryHandbook>(),
     Registered::new::<reverse_arrangements::ReverseArrangements>(),
+    Registered::new::<runs_about_median::RunsAboutMedian>(),
+    Registered::new::<runs_up_down::RunsUpDown>(),
+    Registered::new::<turning_points::TurningPoints>(),
+    Registered::new::<rank_von_neumann::RankVonNeumann>(),
+    Registered::new::<difference_signs::DifferenceSigns>(),
 ];
 
 /// The test with a given key.

@@ -2,6 +2,7 @@
 
 use crate::comparison::Pairings;
 use crate::null_distribution::Probability;
+use crate::reading::Series;
 
 /// The direction in which a statistic points.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -95,6 +96,16 @@ pub enum Datum {
     Number(f64),
     /// Words.
     Text(String),
+}
+
+impl Datum {
+    /// A reading's value: a number, or the words for a grade or a limit.
+    pub fn of_reading(series: &Series, index: usize) -> Self {
+        match series.values.get(index).and_then(|value| value.number()) {
+            Some(number) if series.scale.grades().is_none() => Datum::Number(number),
+            _ => Datum::Text(series.show(index)),
+        }
+    }
 }
 
 macro_rules! datum_from {

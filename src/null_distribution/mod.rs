@@ -2,17 +2,24 @@
 //!
 //! A small tail is never one minus a large one: each tail is summed from its own far end inwards, so that a
 //! probability of 1e-40 keeps its digits.
-
+#[cfg(test)]
+mod arrangements;
 pub mod attained;
+pub mod beta;
 pub mod binomial;
 pub mod chi_square;
 pub mod crossing;
+pub mod hypergeometric;
 pub mod lattice;
 pub mod normal;
 pub mod ordered_table;
+mod pieces;
 pub mod probability;
 pub mod q_multinomial;
 pub mod rank_products;
+pub mod rank_steps;
+pub mod rises;
+pub mod runs_of_two;
 pub mod score_total;
 pub mod signed_weights;
 pub mod strip;
@@ -20,6 +27,7 @@ pub mod student;
 pub mod sum_of_uniforms;
 pub mod tilted;
 pub mod truncated_exponential;
+pub mod turns;
 
 pub use attained::Attained;
 pub use chi_square::ChiSquare;

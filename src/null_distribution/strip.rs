@@ -16,6 +16,16 @@ impl Strip {
         Strip { lowest: 0, mass: vec![1.0] }
     }
 
+    /// Whether no number has been given a chance.
+    pub fn is_empty(&self) -> bool {
+        self.mass.is_empty()
+    }
+
+    /// The sum of all chances.
+    pub fn total(&self) -> f64 {
+        self.mass.iter().sum()
+    }
+
     /// Adds `factor` times the chances of `other`, each number moved up by `shift`.
     pub fn add(&mut self, other: &Strip, shift: i64, factor: f64) {
         let first = other.lowest + shift;

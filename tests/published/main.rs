@@ -4,12 +4,15 @@
 //! source, and what an independent computation gives) and `oracle` (values by enumeration, high-precision arithmetic,
 //! SciPy, statsmodels and R's base `stats`; `made_by` says which). `datasets.json` holds open series that they name,
 //! `tables.json` critical values and tail tables, each verified by enumeration.
-
 mod cochran_armitage;
 mod cox_stuart;
+mod difference_signs;
 mod event_trend;
 mod family;
 mod jonckheere_terpstra;
 mod page;
 mod poisson_trend;
+mod rank_von_neumann;
 mod reference;
+mod runs_about_median;
+mod turning;

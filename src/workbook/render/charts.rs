@@ -103,8 +103,8 @@ fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
     let mut chart = Chart::new(ChartType::Line);
     let line = ChartLine::new().set_color(INK).set_width(1.25).clone();
     let mut dot = ChartFormat::new()
-        .set_solid_fill(&rust_xlsxwriter::ChartSolidFill::new().set_color(INK))
-        .set_line(&ChartLine::new().set_color(INK))
+        .set_solid_fill(rust_xlsxwriter::ChartSolidFill::new().set_color(INK))
+        .set_line(ChartLine::new().set_color(INK))
         .clone();
     let marker = ChartMarker::new()
         .set_type(ChartMarkerType::Circle)
@@ -136,7 +136,7 @@ fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
         axis.set_reverse();
     }
     let axis = chart.y_axis();
-    axis.set_font(&font(9)).set_major_gridlines_line(&ChartLine::new().set_color(GRID).set_width(0.5));
+    axis.set_font(&font(9)).set_major_gridlines_line(ChartLine::new().set_color(GRID).set_width(0.5));
     if let Some(grades) = series.scale.grades() {
         let words: Vec<String> = grades.words().iter().enumerate().map(|(place, word)| format!("{} {word}", place + 1)).collect();
         axis.set_min(1)

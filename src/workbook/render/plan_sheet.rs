@@ -96,13 +96,13 @@ pub fn read_back(rows: &[Vec<String>]) -> Option<Plan> {
     let at = rows.iter().position(|row| std::ptr::eq(row, heading))?;
     let column = |label: &str| heading.iter().position(|cell| cell == label);
     let columns: Vec<Option<usize>> = PLAN_COLUMNS.iter().map(|(label, _, _)| column(label)).collect();
-    let mut plan = Plan::default();
-    plan.adjustment = rows[..at]
+    let adjustment = rows[..at]
         .iter()
         .find(|row| row.iter().any(|cell| cell == wording::ADJUSTMENT))
         .and_then(|row| row.iter().find(|cell| !cell.is_empty() && *cell != wording::ADJUSTMENT))
         .cloned()
         .unwrap_or_default();
+    let mut plan = Plan { rows: Vec::new(), adjustment };
     for row in &rows[at + 1..] {
         let text = |index: usize| {
             columns[index].and_then(|column| row.get(column)).map(|cell| cell.trim().to_owned()).unwrap_or_default()
