@@ -59,7 +59,7 @@ fn a_wrong_word_is_answered_in_its_row() {
     let falls = &annotated.conclusions[0];
     assert!(falls.sentence.contains("seek: expected one of either, rising, falling, got `upwards`"), "{}", falls.sentence);
     let plan = desk.sheet("again.xlsx", "Trend plan");
-    let remark = plan.rows().find(|row| row[1].to_string() == "Falls reported").unwrap()[12].to_string();
+    let remark = plan.rows().find(|row| row[1] == *"Falls reported").unwrap()[12].to_string();
     assert!(remark.contains("upwards"), "{remark}");
 }
 
@@ -79,7 +79,7 @@ fn an_indicator_can_be_left_out_and_its_readings_can_be_graded() {
     assert_eq!(first.conclusions[0].word, Word::Declined);
     assert!(first.conclusions[0].sentence.contains("write the grades into the plan"), "{}", first.conclusions[0].sentence);
     let rows = desk.sheet("once.xlsx", "Trend plan");
-    let noise = rows.rows().position(|row| row[1].to_string() == "Noise level").unwrap() as u32 + rows.start().unwrap().0 + 1;
+    let noise = rows.rows().position(|row| row[1] == *"Noise level").unwrap() as u32 + rows.start().unwrap().0 + 1;
     let blank = regex_free_cell(&desk, noise);
     let graded = blank.replace("/>", " t=\"inlineStr\"><is><t>calm &lt; lively</t></is></c>");
     edit_plan(&desk, "once.xlsx", "edited.xlsx", &[(blank.as_str(), graded.as_str())]);
