@@ -31,7 +31,7 @@ mod tests {
 
     #[test]
     fn numbers_read_back_identically() {
-        let mut value = 1.234_567_890_123_456_7e-300;
+        let mut value: f64 = 1.234_567_890_123_456_7e-300;
         while value < 1e300 {
             for signed in [value, -value, value.floor()] {
                 assert_eq!(number(signed).parse::<f64>().unwrap(), signed, "{signed:e}");
