@@ -37,6 +37,13 @@ pub struct Report {
 impl Report {
     /// Makes a report of a finding.
     pub fn new(series: &Series, understood: &Understood, finding: &Finding) -> Self {
+        let evidence = finding.result.iter().flat_map(|outcome| &outcome.evidence);
+        let evidence = evidence.map(|evidence| table(evidence, series)).collect();
+        Report { evidence, ..Report::without_evidence(series, understood, finding) }
+    }
+
+    /// Makes a report that has no tables, for where a fact or two are wanted.
+    pub fn without_evidence(series: &Series, understood: &Understood, finding: &Finding) -> Self {
         let outcome = finding.result.as_ref().ok();
         let mut facts = vec![
             Fact::new("readings", "Readings", series.len()),
@@ -50,7 +57,6 @@ impl Report {
             facts.push(Fact::new("family", "Indicators judged together", adjusted.family));
         }
         facts.extend(outcome.iter().flat_map(|outcome| outcome.facts.iter().cloned()));
-        let evidence = outcome.iter().flat_map(|outcome| &outcome.evidence);
         Report {
             method: finding.card.key,
             method_title: finding.card.title,
@@ -61,7 +67,7 @@ impl Report {
             p_by: outcome.map(|outcome| outcome.p.by.to_string()),
             statistic: outcome.map(|outcome| (outcome.statistic.name, outcome.statistic.value)),
             facts,
-            evidence: evidence.map(|evidence| table(evidence, series)).collect(),
+            evidence: Vec::new(),
             cautions: outcome.map(|outcome| outcome.cautions.clone()).unwrap_or_default(),
             understood: echo(series, understood),
         }
@@ -113,15 +119,19 @@ fn pairings_table(pairings: &Pairings, series: &Series) -> Table {
     if series.blocks.is_some() {
         columns.push(Column { key: "block", label: "Block" });
     }
+    let moment = |index: usize| match series.moments.kind() {
+        crate::reading::moment::MomentKind::Position => Datum::from(index + 1),
+        _ => series.moments.label(index).into(),
+    };
     let rows = pairings.list.iter().enumerate().map(|(row, pairing)| {
         let (earlier, later) = (pairing.earlier as usize, pairing.later as usize);
         let mut cells: Vec<Datum> = vec![
             (row + 1).into(),
             (earlier + 1).into(),
-            series.moments.label(earlier).into(),
+            moment(earlier),
             Datum::of_reading(series, earlier),
             (later + 1).into(),
-            series.moments.label(later).into(),
+            moment(later),
             Datum::of_reading(series, later),
             pairing.sign.into(),
         ];

@@ -25,7 +25,7 @@ use super::{
     Statistic, Table,
 };
 use crate::comparison::pairs::{self, Pairings};
-use crate::null_distribution::binomial::{Binomial, exact_interval};
+use crate::null_distribution::binomial::{Binomial, CarriedTail, exact_interval};
 use crate::null_distribution::signed_weights::{MOST_WEIGHTS, SignedWeights};
 use crate::null_distribution::{By, Tails, normal};
 use crate::reading::{Blocks, Series};
@@ -320,8 +320,7 @@ fn planning(signs: &Signs, question: &Question, parameters: &Parameters) -> Vec<
     };
     let share = if question.seek == Seek::Falling { 1.0 - parameters.notice.0 } else { parameters.notice.0 };
     let chance = chance_to_notice(trials, share, side, question.seek);
-    let pairs_advised = (1..=u64::from(parameters.most_pairs.0))
-        .find(|&pairs| chance_to_notice(pairs, share, side, question.seek) >= parameters.power.0);
+    let pairs_advised = pairs_to_notice(share, side, question.seek, parameters.power.0, parameters.most_pairs.0.into());
     let readings_a_pair = if parameters.pairs == PairBy::Thirds { 3 } else { 2 };
     vec![
         Fact::new(key, label, needed),
@@ -377,6 +376,31 @@ fn by_block(pairings: &Pairings, blocks: &Blocks) -> Table {
     }
 }
 
+/// The fewest pairs, at most `most`, that reach the risk with chance `power`.
+///
+/// With each pair the least number of like signs that reaches the risk stays or grows by one, so that the tails can be
+/// carried from size to size.
+fn pairs_to_notice(share: f64, side: f64, seek: Seek, power: f64, most: u64) -> Option<u64> {
+    let first = (1..=most).find(|&pairs| 0.5f64.powi(pairs as i32) <= side)?;
+    let [mut null, mut rises, mut falls] = [0.5, share, 1.0 - share].map(|share| CarriedTail::all(first, share));
+    (first..=most).find(|&pairs| {
+        for tail in [&mut null, &mut rises, &mut falls] {
+            if pairs > first {
+                tail.add_trial();
+            }
+        }
+        if null.tail() > side {
+            [&mut null, &mut rises, &mut falls].into_iter().for_each(CarriedTail::raise_count);
+        }
+        let chance = match seek {
+            Seek::Rising => rises.tail(),
+            Seek::Falling => falls.tail(),
+            Seek::Either => rises.tail() + falls.tail(),
+        };
+        chance >= power
+    })
+}
+
 fn no_pairs(series: &Series, parameters: &Parameters, pairings: &Pairings) -> Refusal {
     let have = series.count_present();
     if pairings.incomplete > 0 {
@@ -419,4 +443,24 @@ fn cautions(signs: &Signs, pairings: &Pairings, series: &Series, parameters: &Pa
         cautions.push(format!("{censored} readings are known only as limits; pairs whose order is not certain count as ties."));
     }
     cautions
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn readings_are_advised_as_a_search_from_scratch_would() {
+        for seek in [Seek::Either, Seek::Rising, Seek::Falling] {
+            for side in [0.005, 0.025, 0.03125, 0.05, 0.2] {
+                for share in [0.1, 0.4, 0.6, 0.75, 0.9] {
+                    for power in [0.5, 0.8, 0.95] {
+                        let plain = (1..=500).find(|&pairs| chance_to_notice(pairs, share, side, seek) >= power);
+                        let carried = pairs_to_notice(share, side, seek, power, 500);
+                        assert_eq!(carried, plain, "{seek:?} side {side} share {share} power {power}");
+                    }
+                }
+            }
+        }
+    }
 }

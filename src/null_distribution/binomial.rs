@@ -96,6 +96,47 @@ impl Binomial {
     }
 }
 
+/// An upper tail that is carried along while trials are added and the count is raised, each step a few multiplications.
+/// For searching through many sizes; a single tail is better taken from [`Binomial`].
+#[derive(Clone, Copy, Debug)]
+pub struct CarriedTail {
+    trials: f64,
+    count: f64,
+    share: f64,
+    /// The chance of at least `count`.
+    tail: f64,
+    /// The chance of exactly one less.
+    below: f64,
+}
+
+impl CarriedTail {
+    /// The chance that all of `trials` count. `share` lies between 0 and 1, ends excluded.
+    pub fn all(trials: u64, share: f64) -> Self {
+        let trials = trials as f64;
+        let below = trials * share.powf(trials - 1.0) * (1.0 - share);
+        CarriedTail { trials, count: trials, share, tail: share.powf(trials), below }
+    }
+
+    /// The chance of at least the present count in the present number of trials.
+    pub fn tail(&self) -> f64 {
+        self.tail
+    }
+
+    /// One more trial, the same count.
+    pub fn add_trial(&mut self) {
+        self.tail += self.share * self.below;
+        self.below *= (self.trials + 1.0) / (self.trials + 2.0 - self.count) * (1.0 - self.share);
+        self.trials += 1.0;
+    }
+
+    /// The same trials, a count higher by one.
+    pub fn raise_count(&mut self) {
+        self.below *= (self.trials + 1.0 - self.count) / self.count * self.share / (1.0 - self.share);
+        self.tail -= self.below;
+        self.count += 1.0;
+    }
+}
+
 /// The Clopper-Pearson interval for a share of `count` in `trials`, at the given confidence.
 ///
 /// Each limit is where the observed count becomes as improbable as (1 - confidence)/2. With no trials nothing is known.
@@ -109,25 +150,28 @@ pub fn exact_interval(count: u64, trials: u64, confidence: f64) -> (f64, f64) {
     (low, high)
 }
 
-/// The share for which at least `count` of `trials` has chance `tail`: Newton steps kept inside a shrinking bracket.
+/// The share for which at least `count` of `trials` has chance `tail`.
+///
+/// The logarithm of the chance is a concave function of the logarithm of the share, so that Newton steps between the
+/// logarithms lead to the solution from any start; the bracket is for where the chance is too small for a number.
 fn share_with_upper_tail(count: u64, trials: u64, tail: f64) -> f64 {
     let (mut low, mut high) = (0.0, 1.0);
-    let observed = count as f64 / trials as f64;
-    let mut share = (observed * 0.8).clamp(1e-12, 1.0 - 1e-12);
+    let mut share = (count as f64 / trials as f64).min(1.0 - 1e-12);
     for _ in 0..200 {
         let null = Binomial::new(trials, share);
-        let excess = null.upper_tail(count) - tail;
-        if excess > 0.0 {
+        let chance = null.upper_tail(count);
+        if chance > tail {
             high = share
         } else {
             low = share
         }
-        let slope = count as f64 / share * null.mass(count);
-        let mut next = share - excess / slope;
-        if !(next > low && next < high) {
+        let elasticity = count as f64 * null.mass(count) / chance;
+        let mut next = share * ((tail / chance).ln() / elasticity).exp();
+        if !(next >= low && next <= high) {
             next = 0.5 * (low + high);
         }
-        if (next - share).abs() <= 1e-15 * share {
+        // The error after a Newton step is about the square of the step.
+        if (next - share).abs() <= 1e-12 * share {
             return next;
         }
         share = next;
@@ -192,6 +236,39 @@ mod tests {
                 assert!((got - expected).abs() <= 1e-13 * expected, "n {n} k {k}: {got:e} {expected:e}");
                 let mirrored = Binomial::fair(n).lower_tail(n - k as u64);
                 assert!((mirrored - expected).abs() <= 1e-13 * expected);
+            }
+        }
+    }
+
+    #[test]
+    fn limits_are_where_the_chance_is_the_stated_one() {
+        for trials in [1, 2, 5, 52, 1000, 100_000] {
+            for count in [1, trials / 3 + 1, trials / 2 + 1, trials] {
+                for confidence in [0.5, 0.95, 0.999_999] {
+                    let tail = (1.0 - confidence) / 2.0;
+                    let (low, _) = exact_interval(count, trials, confidence);
+                    let chance = Binomial::new(trials, low).upper_tail(count);
+                    assert!((chance - tail).abs() < 1e-9 * tail, "{count} of {trials} at {confidence}: {chance} {tail}");
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn a_carried_tail_agrees_with_the_one_from_scratch() {
+        for share in [0.25, 0.5, 0.75] {
+            let mut carried = CarriedTail::all(5, share);
+            let mut count = 5;
+            for trials in 5..2000 {
+                if trials > 5 {
+                    carried.add_trial();
+                }
+                if carried.tail() > 0.05 {
+                    carried.raise_count();
+                    count += 1;
+                }
+                let expected = Binomial::new(trials, share).upper_tail(count);
+                assert!((carried.tail() - expected).abs() < 1e-13, "{trials} {count} {share}: {} {expected}", carried.tail());
             }
         }
     }

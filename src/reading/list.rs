@@ -35,6 +35,16 @@ fn unquote(item: &str) -> &str {
 /// A number as people write it: decimal point or comma, thousands marks, a sign, a percentage, a currency sign.
 /// A percentage is its fraction. `None` if the text is not a number.
 pub fn number(text: &str) -> Option<f64> {
+    plain_number(text).or_else(|| decorated_number(text))
+}
+
+/// Digits with at most a sign, a point and an exponent: nearly all numbers, and nothing in them needs to be rewritten.
+fn plain_number(text: &str) -> Option<f64> {
+    let plain = text.bytes().all(|byte| byte.is_ascii_digit() || matches!(byte, b'.' | b'-' | b'+' | b'e' | b'E'));
+    if plain { text.parse().ok().filter(|number: &f64| number.is_finite()) } else { None }
+}
+
+fn decorated_number(text: &str) -> Option<f64> {
     let text = text.trim().replace(['\u{a0}', '\u{202f}', ' ', '\'', '’'], "").replace('\u{2212}', "-");
     let (text, negative) = match text.strip_prefix('(').and_then(|rest| rest.strip_suffix(')')) {
         Some(inner) => (inner.to_owned(), true),

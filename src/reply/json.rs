@@ -14,7 +14,7 @@ impl Form for Json {
     }
 
     fn report(&self, report: &Report) -> String {
-        write(&View(report))
+        write_sized(&View(report), REPORT)
     }
 
     fn fact(&self, key: &str, value: &Datum) -> String {
@@ -26,9 +26,20 @@ impl Form for Json {
     }
 }
 
+/// Bytes that the report on two years of weeks takes with its evidence.
+const REPORT: usize = 6 << 10;
+
 /// Writes a value whose parts all have a JSON form.
 pub(super) fn write(value: &impl Serialize) -> String {
-    serde_json::to_string(value).unwrap_or_default()
+    write_sized(value, 64)
+}
+
+/// Writes a value that is expected to take so many bytes.
+fn write_sized(value: &impl Serialize, bytes: usize) -> String {
+    let mut text = Vec::with_capacity(bytes);
+    // A vector in memory takes everything.
+    let _ = serde_json::to_writer(&mut text, value);
+    String::from_utf8(text).unwrap_or_default()
 }
 
 /// Something borrowed, as it looks in JSON.

@@ -68,6 +68,14 @@ impl Presentation {
         }
     }
 
+    /// Whether the answer shows the tables of evidence.
+    pub fn shows_evidence(&self) -> bool {
+        match &self.give {
+            Some(key) => key == EVIDENCE,
+            None => matches!(self.reply, Reply::Json | Reply::Xml),
+        }
+    }
+
     /// Reads what was sent; `usual` is the form where none is named.
     pub fn of(arguments: &Arguments, usual: Reply) -> Result<Self, Problem> {
         let read = <Presentation as Declared>::read(arguments)?;

@@ -13,7 +13,6 @@ pub static CODES: &[ProblemCode] = &[
     code("ragged-range", 400, "The rows of a range are not equally long."),
     code("encoding", 400, "The body is not text in UTF-8."),
     code("body-broken", 400, "The body ended before it was complete, or its parts cannot be told apart."),
-    code("host-absent", 400, "The request does not say which host it is meant for."),
     code("reading", 400, "A reading is neither a number, a limit, one of the grades, nor blank."),
     code("grades-unordered", 400, "The readings are words whose order is not stated."),
     code("moments-count", 400, "There is not one moment for each reading."),

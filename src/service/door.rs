@@ -4,7 +4,7 @@
 //! it out, without asking the person for anything:
 //!
 //! - `Host` must be this machine by a name or number that nobody else can own; so a name that was first theirs and now
-//!   points here (DNS rebinding) is refused.
+//!   points here (DNS rebinding) is refused. Only HTTP/1.0, which no browser speaks, may leave it out.
 //! - `Origin`, where there is one, must be our own.
 //! - `Sec-Fetch-Site`, where there is one, must not be another site's, save for a person following a link.
 //!
@@ -19,7 +19,7 @@ use std::task::Poll;
 use actix_web::Error;
 use actix_web::body::BoxBody;
 use actix_web::dev::{ServiceRequest, ServiceResponse};
-use actix_web::http::Version;
+use actix_web::error::InternalError;
 use actix_web::http::header::{self, HeaderMap, HeaderName, HeaderValue};
 use actix_web::middleware::Next;
 use actix_web::web::Data;
@@ -27,6 +27,7 @@ use actix_web::web::Data;
 use super::application::State;
 use super::{compute, respond};
 use crate::problem::{Problem, ProblemKind};
+use crate::reply::Presentation;
 
 /// The middleware around all routes.
 pub async fn guard(request: ServiceRequest, next: Next<BoxBody>) -> Result<ServiceResponse<BoxBody>, Error> {
@@ -37,24 +38,23 @@ pub async fn guard(request: ServiceRequest, next: Next<BoxBody>) -> Result<Servi
             request.into_response(refused)
         }
         Ok(()) => {
-            let own = request.request().clone();
             let mut answering = pin!(next.call(request));
-            let caught = poll_fn(|context| match catch_unwind(AssertUnwindSafe(|| answering.as_mut().poll(context))) {
-                Ok(Poll::Pending) => Poll::Pending,
-                Ok(Poll::Ready(answered)) => Poll::Ready(Some(answered)),
-                Err(_) => Poll::Ready(None),
+            let answered = poll_fn(|context| {
+                catch_unwind(AssertUnwindSafe(|| answering.as_mut().poll(context)))
+                    .unwrap_or_else(|_| Poll::Ready(Err(panicked())))
             });
-            match caught.await {
-                Some(answered) => answered?,
-                None => {
-                    let broken = respond::problem_for(&own, &compute::broken());
-                    ServiceResponse::new(own, broken)
-                }
-            }
+            answered.await?
         }
     };
     protect(response.headers_mut());
     Ok(response)
+}
+
+/// The last resort for a panic outside of what computes, where it is caught more politely.
+fn panicked() -> Error {
+    let mut response = respond::problem(&compute::broken(), &Presentation::default());
+    protect(response.headers_mut());
+    InternalError::from_response("a panic", response).into()
 }
 
 /// Headers that keep an answer where it belongs. Readings may be about people, so nothing is stored on the way unless a
@@ -82,10 +82,6 @@ fn admit(request: &ServiceRequest, bound: IpAddr) -> Result<(), Problem> {
     }
     if let Some(authority) = request.uri().authority() {
         check_host(authority.as_str(), bound)?;
-    }
-    if host.is_none() && request.version() >= Version::HTTP_11 {
-        return Err(Problem::new(ProblemKind::Malformed, "host-absent", "the request has no Host header")
-            .help("Name the host, such as Host: 127.0.0.1:7373."));
     }
     if let Some(origin) = headers.get(header::ORIGIN) {
         let origin = origin.to_str().unwrap_or_default();

@@ -164,7 +164,7 @@ pub fn pieces<K: 'static>(file: File, kept: K) -> impl Stream<Item = Result<Byte
 }
 
 fn last_part(name: &str) -> &str {
-    name.rsplit(['/', '\\']).next().unwrap_or_default().trim()
+    name.rsplit(['/', '\\', ':']).next().unwrap_or_default().trim()
 }
 
 /// The extension of a name, if it is one of a workbook.

@@ -95,6 +95,6 @@ pub fn weekly() -> Vec<u8> {
 
 /// The row of a sheet whose first cell is the given text.
 pub fn row<'a>(range: &'a Range<Data>, first: &str) -> Vec<&'a Data> {
-    let found = range.rows().find(|row| *row[0] == *first);
+    let found = range.rows().find(|row| row[0] == *first);
     found.unwrap_or_else(|| panic!("no row begins with {first}")).iter().collect()
 }

@@ -85,7 +85,8 @@ fn judge(method: &Registered, arguments: &Arguments, usual: Reply, limits: &Limi
     if let Err(refusal) = finding.result {
         return Err(refusal.into());
     }
-    reply::write(&Report::new(&asked.series, &asked.understood, &finding), &presentation)
+    let report = if presentation.shows_evidence() { Report::new } else { Report::without_evidence };
+    reply::write(&report(&asked.series, &asked.understood, &finding), &presentation)
 }
 
 async fn respond(name: &str, sent: Sent, state: &Data<State>) -> HttpResponse {
