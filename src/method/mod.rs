@@ -14,6 +14,7 @@ pub mod difference_signs;
 pub mod rank_von_neumann;
 pub mod runs_about_median;
 pub mod runs_up_down;
+pub mod spearman;
 pub mod turning_points;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
@@ -26,6 +27,7 @@ use crate::reading::Series;
 /// Every test, in the order in which they are listed.
 pub static METHODS: &[Registered] = &[
     Registered::new::<cox_stuart::CoxStuart>(),
+    Registered::new::<spearman::Spearman>(),
     Registered::new::<runs_about_median::RunsAboutMedian>(),
     Registered::new::<runs_up_down::RunsUpDown>(),
     Registered::new::<turning_points::TurningPoints>(),

@@ -8,6 +8,7 @@ mod arrangements;
 pub mod attained;
 pub mod beta;
 pub mod binomial;
+pub mod draws;
 pub mod hypergeometric;
 pub mod lattice;
 pub mod normal;

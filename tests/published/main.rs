@@ -11,4 +11,5 @@ mod family;
 mod rank_von_neumann;
 mod reference;
 mod runs_about_median;
+mod spearman;
 mod turning;
