@@ -3,6 +3,7 @@
 //! To add a test: write its file, add its `mod` line and its line in [`METHODS`], and a folder of published examples
 //! under `tests/published`. Route, parser, help, OpenAPI, plan, sheet and page follow from the declaration.
 
+pub mod change;
 pub mod declaration;
 pub mod outcome;
 pub mod question;
@@ -11,6 +12,7 @@ pub mod turning;
 
 pub mod cox_stuart;
 pub mod difference_signs;
+pub mod pettitt;
 pub mod rank_von_neumann;
 pub mod runs_about_median;
 pub mod runs_up_down;
@@ -33,6 +35,7 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<turning_points::TurningPoints>(),
     Registered::new::<rank_von_neumann::RankVonNeumann>(),
     Registered::new::<difference_signs::DifferenceSigns>(),
+    Registered::new::<pettitt::Pettitt>(),
 ];
 
 /// The test with a given key.

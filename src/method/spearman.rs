@@ -32,7 +32,7 @@ use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
     Table,
 };
-use crate::comparison::midranks::doubled_midranks;
+use crate::comparison::midranks::{classes, doubled_midranks, unit};
 use crate::null_distribution::draws::{Draws, MOST_DRAWN};
 use crate::null_distribution::rank_products::{self, MOST_PRODUCTS};
 use crate::null_distribution::{Attained, By, Tails, beta, normal};
@@ -82,7 +82,7 @@ impl Method for Spearman {
         claim: Claim::Trend,
         scale: ScaleNeeded::Ordered,
         least_readings: 3,
-        exact: "Up to 500 million products of chances: 16 readings without ties, or 60 readings in three grades.",
+        exact: "Up to 500 million products of chances: 16 readings without ties, or 50 readings in three grades.",
         assumes: &[
             "Apart from a trend, the readings are independent and come from one distribution.",
             "Readings can be ordered; their differences need not mean anything.",
@@ -170,6 +170,9 @@ const PERMUTATION: By = By::Approximation("seeded permutation");
 struct Ranked {
     indices: Vec<usize>,
     ranks: Vec<u32>,
+    sorted: Vec<u32>,
+    /// What all ranks are multiples of, counted from the lowest one.
+    unit: u32,
     /// Sum of squares of the doubled ranks about their mean.
     spread: f64,
 }
@@ -177,13 +180,17 @@ struct Ranked {
 impl Ranked {
     fn of(series: &Series) -> Result<Self, Refusal> {
         let (indices, values): (Vec<usize>, Vec<Value>) = series.present().unzip();
-        let ranks: Vec<u32> = doubled_midranks(&values).into_iter().map(|rank| rank as u32).collect();
+        let ranks = doubled_midranks(&values);
+        let unit = unit(&classes(&ranks)) as u32;
+        let ranks: Vec<u32> = ranks.into_iter().map(|rank| rank as u32).collect();
+        let mut sorted = ranks.clone();
+        sorted.sort_unstable();
         let mean = (ranks.len() + 1) as f64;
         let spread: f64 = ranks.iter().map(|&rank| (f64::from(rank) - mean).powi(2)).sum();
         if spread == 0.0 {
             return Err(Refusal::AllTied { compared: ranks.len() });
         }
-        Ok(Ranked { indices, ranks, spread })
+        Ok(Ranked { indices, ranks, sorted, unit, spread })
     }
 
     fn sum_of_products(&self) -> i64 {
@@ -209,20 +216,17 @@ impl Ranked {
 
     /// The chance of the one order that is sorted.
     fn chance_of_sorted(&self) -> f64 {
-        let mut sorted = self.ranks.clone();
-        sorted.sort_unstable();
         let (mut chance, mut copies) = (1.0_f64, 0.0);
-        for index in 0..sorted.len() {
-            copies = if index > 0 && sorted[index] == sorted[index - 1] { copies + 1.0 } else { 1.0 };
+        for (index, rank) in self.sorted.iter().enumerate() {
+            copies = if index > 0 && self.sorted[index - 1] == *rank { copies + 1.0 } else { 1.0 };
             chance *= copies / (index + 1) as f64;
         }
         chance.max(f64::MIN_POSITIVE)
     }
 
     fn attained(&self, parameters: &Parameters) -> Result<Attained, Refusal> {
-        let mut sorted = self.ranks.clone();
-        sorted.sort_unstable();
-        let blocks = [sorted];
+        let scaled = |ranks: &[u32]| ranks.iter().map(|rank| (rank - self.sorted[0]) / self.unit).collect::<Vec<u32>>();
+        let blocks = [scaled(&self.sorted)];
         let effort = rank_products::effort(&blocks);
         let feasible = effort <= MOST_PRODUCTS;
         let n = self.ranks.len() as f64;
@@ -233,7 +237,7 @@ impl Ranked {
                 Err(Refusal::BeyondExact { what, have: millions(effort), most: millions(MOST_PRODUCTS) })
             }
             PBy::Best | PBy::Exact if feasible => {
-                Ok(Attained::exact(&rank_products::sum_of_products(&blocks), self.sum_of_products()))
+                Ok(Attained::exact(&rank_products::sum_of_products(&blocks), sum_of_products(&scaled(&self.ranks))))
             }
             PBy::Permutation => self.permuted(parameters),
             PBy::Normal => Ok(self.approximated(By::Approximation("normal"), |rho| normal::upper_tail(rho * (n - 1.0).sqrt()))),
@@ -246,9 +250,7 @@ impl Ranked {
     /// Tails by an approximation for the chance of a coefficient at least as high; a perfect correlation has its exact chance.
     fn approximated(&self, by: By, upper_tail: impl Fn(f64) -> f64) -> Attained {
         let tail = |rho: f64| if rho >= 1.0 { self.chance_of_sorted() } else { upper_tail(rho) };
-        let mut sorted = self.ranks.clone();
-        sorted.sort_unstable();
-        let (rho, highest) = (self.rho(), self.correlation(sum_of_products(&sorted)));
+        let (rho, highest) = (self.rho(), self.correlation(sum_of_products(&self.sorted)));
         let extremes = Tails { lower: tail(highest), upper: tail(highest) };
         Attained::doubled(Tails { lower: tail(-rho), upper: tail(rho) }, extremes, by)
     }

@@ -16,6 +16,7 @@ mod pieces;
 pub mod probability;
 pub mod rank_products;
 pub mod rank_steps;
+pub mod rank_walk;
 pub mod rises;
 pub mod runs_of_two;
 pub mod signed_weights;

@@ -8,6 +8,7 @@
 mod cox_stuart;
 mod difference_signs;
 mod family;
+mod pettitt;
 mod rank_von_neumann;
 mod reference;
 mod runs_about_median;
