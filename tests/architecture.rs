@@ -34,7 +34,7 @@ const OWNERS: &[(&str, &str)] = &[
 ];
 
 /// Files of `method/` that are not tests but what tests share.
-const SHARED_BY_METHODS: [&str; 7] = ["mod", "choices", "declaration", "outcome", "question", "screen", "turning"];
+const SHARED_BY_METHODS: [&str; 8] = ["mod", "change", "choices", "declaration", "outcome", "question", "screen", "turning"];
 
 fn sources() -> BTreeMap<PathBuf, String> {
     let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("src");

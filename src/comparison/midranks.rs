@@ -1,6 +1,11 @@
 //! Mid-ranks, also of readings some of which are known only as limits.
 
+use std::collections::BTreeMap;
+
 use crate::reading::Value;
+
+/// The different doubled ranks, ascending, and how often each occurs.
+pub type Classes = Vec<(u64, usize)>;
 
 /// Twice the mid-rank of each value, none of them missing: readings + 1 + (how many are lower) - (how many are higher).
 ///
@@ -20,6 +25,23 @@ pub fn doubled_midranks(values: &[Value]) -> Vec<u64> {
         (values.len() + 1 + lower - higher) as u64
     };
     values.iter().map(rank).collect()
+}
+
+/// The different ranks among readings, and how often each occurs.
+pub fn classes(ranks: &[u64]) -> Classes {
+    let mut counts = BTreeMap::new();
+    for &rank in ranks {
+        *counts.entry(rank).or_insert(0) += 1;
+    }
+    counts.into_iter().collect()
+}
+
+/// The largest whole number that divides every difference between the ranks; 1 if there is none.
+pub fn unit(classes: &Classes) -> u64 {
+    fn common(a: u64, b: u64) -> u64 {
+        if b == 0 { a } else { common(b, a % b) }
+    }
+    classes.windows(2).fold(0, |unit, pair| common(pair[1].0 - pair[0].0, unit)).max(1)
 }
 
 /// The ends of what a value may be: the number, and 0 just below it, 1 at it, 2 just above it. A value is certainly lower than

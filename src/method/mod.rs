@@ -3,6 +3,7 @@
 //! To add a test: write its file, add its `mod` line and its line in [`METHODS`], and a folder of published examples
 //! under `tests/published`. Route, parser, help, OpenAPI, plan, sheet and page follow from the declaration.
 
+pub mod change;
 pub mod choices;
 pub mod declaration;
 pub mod outcome;
@@ -17,11 +18,13 @@ pub mod jonckheere_terpstra;
 pub mod laplace;
 pub mod military_handbook;
 pub mod page;
+pub mod pettitt;
 pub mod poisson_trend;
 pub mod rank_von_neumann;
 pub mod reverse_arrangements;
 pub mod runs_about_median;
 pub mod runs_up_down;
+pub mod spearman;
 pub mod turning_points;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
@@ -41,11 +44,13 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<laplace::Laplace>(),
     Registered::new::<military_handbook::MilitaryHandbook>(),
     Registered::new::<reverse_arrangements::ReverseArrangements>(),
+    Registered::new::<spearman::Spearman>(),
     Registered::new::<runs_about_median::RunsAboutMedian>(),
     Registered::new::<runs_up_down::RunsUpDown>(),
     Registered::new::<turning_points::TurningPoints>(),
     Registered::new::<rank_von_neumann::RankVonNeumann>(),
     Registered::new::<difference_signs::DifferenceSigns>(),
+    Registered::new::<pettitt::Pettitt>(),
 ];
 
 /// The test with a given key.

@@ -37,8 +37,8 @@ use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
     Table,
 };
-use crate::comparison::midranks::doubled_midranks;
-use crate::null_distribution::rank_steps::{self, Classes, MOST_PRODUCTS};
+use crate::comparison::midranks::{Classes, classes, doubled_midranks};
+use crate::null_distribution::rank_steps::{self, MOST_PRODUCTS};
 use crate::null_distribution::{Attained, By, Tails, beta, normal};
 use crate::reading::{Series, Value};
 
@@ -166,7 +166,7 @@ impl Ranked {
     fn of(series: &Series) -> Result<Self, Refusal> {
         let (indices, values): (Vec<usize>, Vec<Value>) = series.present().unzip();
         let ranks = doubled_midranks(&values);
-        let classes = rank_steps::classes(&ranks);
+        let classes = classes(&ranks);
         if classes.len() < 2 {
             return Err(Refusal::AllTied { compared: ranks.len() });
         }

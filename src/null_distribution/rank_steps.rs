@@ -10,21 +10,10 @@ use std::collections::{BTreeMap, VecDeque};
 
 use super::Lattice;
 use super::strip::Strip;
+use crate::comparison::midranks::{Classes, unit};
 
 /// The most products that the distribution may take; at most a third of a second on one core.
 pub const MOST_PRODUCTS: f64 = 1e8;
-
-/// The different ranks, ascending, and how often each occurs.
-pub type Classes = Vec<(u64, usize)>;
-
-/// The different ranks of readings and how often each occurs.
-pub fn classes(ranks: &[u64]) -> Classes {
-    let mut counts = BTreeMap::new();
-    for &rank in ranks {
-        *counts.entry(rank).or_insert(0) += 1;
-    }
-    counts.into_iter().collect()
-}
 
 /// About how many products [`sum_of_squared_steps`] takes.
 pub fn effort(classes: &Classes) -> f64 {
@@ -92,14 +81,6 @@ pub fn extremes(ranks: &[u64]) -> (u64, u64) {
         }
     }
     (smallest, largest)
-}
-
-/// The largest number of which all ranks are multiples, up to a common shift.
-fn unit(classes: &Classes) -> u64 {
-    fn common(a: u64, b: u64) -> u64 {
-        if b == 0 { a } else { common(b, a % b) }
-    }
-    classes.windows(2).fold(0, |unit, pair| common(pair[1].0 - pair[0].0, unit)).max(1)
 }
 
 #[cfg(test)]

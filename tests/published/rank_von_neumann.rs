@@ -1,5 +1,6 @@
 //! The rank version of von Neumann's test against a published example, tables and enumeration.
 
+use risefall::comparison::midranks::Classes;
 use risefall::null_distribution::rank_steps;
 use serde_json::{Value, json};
 
@@ -63,7 +64,7 @@ fn table_of_squared_steps() {
     let table = file("tables.json")["rank_von_neumann_NM"]["table"].clone();
     let mut checked = 0;
     for (n, row) in table.as_object().unwrap() {
-        let classes: rank_steps::Classes = (1..=n.parse().unwrap()).map(|rank| (2 * rank, 1)).collect();
+        let classes: Classes = (1..=n.parse().unwrap()).map(|rank| (2 * rank, 1)).collect();
         let null = rank_steps::sum_of_squared_steps(&classes);
         for (value, chance) in row.as_object().unwrap() {
             let got = null.tails(4 * value.parse::<i64>().unwrap()).lower;
