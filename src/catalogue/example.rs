@@ -14,11 +14,18 @@ pub fn arguments(method: &Registered) -> Value {
         ScaleNeeded::EventTimes => json!([12, 31, 58, 66, 81, 90, 104, 111, 117, 125, 128, 133]),
         _ => json!([3, 4, 2, 5, 6, 5, 7, 8, 6, 9, 9, 10]),
     };
-    if method.card.blocks {
-        json!({ "readings": readings, "blocks": ["north", "south", "east", "north", "south", "east", "north", "south", "east", "north", "south", "east"] })
-    } else {
-        json!({ "readings": readings })
+    let mut sent = json!({ "readings": readings });
+    if method.card.repeated_moments && method.card.scale == ScaleNeeded::Ordered {
+        sent["moments"] = json!([1, 1, 1, 2, 2, 2, 3, 3, 3, 4, 4, 4]);
     }
+    if method.card.blocks {
+        let places = ["north", "south", "east"];
+        sent["blocks"] = (0..12).map(|index| places[index % 3]).collect();
+    }
+    if method.parameters.iter().any(|parameter| parameter.name == "trials") {
+        sent["trials"] = json!([20, 20, 20, 20, 20, 20, 20, 20, 20, 20, 20, 20]);
+    }
+    sent
 }
 
 /// The same arguments as names and texts for an address.

@@ -83,7 +83,6 @@ impl Method for Pettitt {
         cost: "n log n beyond the exact range",
         fits_better: &[
             ("mann-kendall", "the readings drift rather than jump"),
-            ("normal-homogeneity", "the readings are measured and about normal, and the change may be near an end"),
             ("buishand-range", "the readings are measured and about normal, and the change may be near the middle"),
         ],
         sources: &[Source {

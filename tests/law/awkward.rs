@@ -7,7 +7,7 @@ use risefall::method::question::Question;
 use risefall::method::{Datum, METHODS, Registered, Seek};
 use risefall::reading::{Missing, Value};
 
-use crate::inputs::{Input, Ties};
+use crate::inputs::{Input, Ties, forms_of_p};
 use crate::random::Random;
 
 const BLANK: Value = Value::Missing(Missing::Blank);
@@ -86,7 +86,7 @@ fn nothing_panics_and_every_number_is_one() {
     for method in METHODS {
         for values in awkward() {
             for input in surroundings(method, &values, &mut random) {
-                for p_by in ["best", "exact", "normal"] {
+                for p_by in forms_of_p(method) {
                     let input = input.with(method, "p_by", p_by);
                     let checked = catch_unwind(AssertUnwindSafe(|| check(method, &input)));
                     assert!(checked.is_ok(), "{}: {input:?}", method.card.key);

@@ -4,7 +4,7 @@ use risefall::method::{Claim, METHODS, Outcome, Registered, ScaleNeeded, Seek};
 use risefall::null_distribution::By;
 use risefall::reading::Value;
 
-use crate::inputs::{Input, Ties, directions};
+use crate::inputs::{Input, Ties, directions, fact};
 use crate::random::Random;
 
 /// What is equally probable if there is no trend.
@@ -21,18 +21,26 @@ enum Arrangements {
     MomentsOfEvents,
 }
 
-/// Which arrangements a test counts, and the sign that makes its statistic grow with a rise.
+/// How strongly an outcome speaks for a rise, and how strongly for a fall.
+type Evidence = fn(&Outcome) -> (f64, f64);
+
+const BY_STATISTIC: Evidence = |outcome| (outcome.statistic.value, -outcome.statistic.value);
+const BY_STATISTIC_TURNED: Evidence = |outcome| (-outcome.statistic.value, outcome.statistic.value);
+const BY_RISES_AND_FALLS: Evidence = |outcome| (fact(outcome, "rises").unwrap(), fact(outcome, "falls").unwrap());
+
+/// Which arrangements a test counts, and what makes one of them more extreme than another.
 ///
 /// Tests that are not listed count all orders, if order is enough for them.
-fn arrangements(method: &Registered) -> Option<(Arrangements, f64)> {
+fn arrangements(method: &Registered) -> Option<(Arrangements, Evidence)> {
     Some(match (method.card.key, method.card.scale) {
-        ("cox-stuart", _) => (Arrangements::ExchangesWithinPairs, 1.0),
-        ("page", _) => (Arrangements::OrdersWithinBlocks, 1.0),
-        ("cochran-armitage", _) => (Arrangements::EventsAmongTrials, 1.0),
-        ("poisson-trend", _) => (Arrangements::MomentsOfEvents, 1.0),
-        ("reverse-arrangements", _) => (Arrangements::Orders, -1.0),
+        ("cox-stuart", _) => (Arrangements::ExchangesWithinPairs, BY_STATISTIC),
+        ("page", _) => (Arrangements::OrdersWithinBlocks, BY_STATISTIC),
+        ("cochran-armitage", _) => (Arrangements::EventsAmongTrials, BY_STATISTIC),
+        ("poisson-trend", _) => (Arrangements::MomentsOfEvents, BY_STATISTIC),
+        ("reverse-arrangements", _) => (Arrangements::Orders, BY_STATISTIC_TURNED),
+        ("difference-signs", _) => (Arrangements::Orders, BY_RISES_AND_FALLS),
         (key, _) if EXEMPT.iter().any(|(name, _)| *name == key) => return None,
-        (_, ScaleNeeded::Ordered) if method.card.claim == Claim::Trend => (Arrangements::Orders, 1.0),
+        (_, ScaleNeeded::Ordered) if method.card.claim == Claim::Trend => (Arrangements::Orders, BY_STATISTIC),
         _ => return None,
     })
 }
@@ -46,7 +54,7 @@ const EXEMPT: [(&str, &str); 2] = [
 #[test]
 fn exact_p_is_the_share_of_all_arrangements() {
     for (number, method) in METHODS.iter().enumerate() {
-        let Some((arrangements, sign)) = arrangements(method) else { continue };
+        let Some((arrangements, evidence)) = arrangements(method) else { continue };
         let mut random = Random::seeded(1_000 + number as u64);
         let mut checked = 0;
         for n in [2, 3, 5, 6, 7] {
@@ -55,7 +63,7 @@ fn exact_p_is_the_share_of_all_arrangements() {
                 let input = small(method, &mut random, n, ties).with(method, "p_by", "exact");
                 let Ok(outcome) = input.judge(method, Seek::Either) else { continue };
                 if outcome.p.by == By::Exact {
-                    check(method, &input, &outcome, &arrangements, sign);
+                    check(method, &input, &outcome, &arrangements, evidence);
                     checked += 1;
                 }
             }
@@ -80,16 +88,16 @@ fn small(method: &Registered, random: &mut Random, n: usize, ties: Ties) -> Inpu
     input
 }
 
-/// Judges every arrangement and compares the shares at least as high and at least as low with the tails.
-fn check(method: &Registered, input: &Input, outcome: &Outcome, arrangements: &Arrangements, sign: f64) {
-    let observed = sign * outcome.statistic.value;
-    let (mut all, mut high, mut low) = (0.0, 0.0, 0.0);
+/// Judges every arrangement and compares the shares that are at least as extreme with the tails.
+fn check(method: &Registered, input: &Input, outcome: &Outcome, arrangements: &Arrangements, evidence: Evidence) {
+    let observed = evidence(outcome);
+    let (mut all, mut as_rising, mut as_falling) = (0.0, 0.0, 0.0);
     let mut visit = |arranged: &Input| {
         let arranged = arranged.judge(method, Seek::Either).unwrap_or_else(|refusal| panic!("{}: {refusal}", method.card.key));
-        let statistic = sign * arranged.statistic.value;
+        let (rising, falling) = evidence(&arranged);
         all += 1.0;
-        high += f64::from(u8::from(statistic >= observed - 1e-9));
-        low += f64::from(u8::from(statistic <= observed + 1e-9));
+        as_rising += f64::from(u8::from(rising >= observed.0 - 1e-9));
+        as_falling += f64::from(u8::from(falling >= observed.1 - 1e-9));
     };
     let n = input.values.len();
     match arrangements {
@@ -128,7 +136,7 @@ fn check(method: &Registered, input: &Input, outcome: &Outcome, arrangements: &A
         }
     }
     let (rising, falling) = directions(outcome).unwrap();
-    for (got, count, tail) in [(rising, high, "rising"), (falling, low, "falling")] {
+    for (got, count, tail) in [(rising, as_rising, "rising"), (falling, as_falling, "falling")] {
         let expected: f64 = count / all;
         assert!((got - expected).abs() <= 1e-11 * expected, "{}, {tail}: {got} and {expected}, {input:?}", method.card.key);
     }

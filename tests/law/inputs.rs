@@ -5,7 +5,7 @@
 
 use std::sync::Arc;
 
-use risefall::method::declaration::{Argument, Arguments};
+use risefall::method::declaration::{Argument, Arguments, Shape};
 use risefall::method::question::Question;
 use risefall::method::{Outcome, Refusal, Registered, ScaleNeeded, Seek};
 use risefall::reading::{Blocks, Cell, Moments, Series, Value};
@@ -40,9 +40,16 @@ impl Input {
         Input::plain(numbers.into_iter().map(Value::Number).collect())
     }
 
-    /// `n` readings without a trend.
+    /// `n` readings without a trend. A test that simulates draws as little as it may.
     pub fn random(method: &Registered, random: &mut Random, n: usize, ties: Ties) -> Self {
-        let heavy = ties == Ties::Heavy;
+        let mut input = Input::suited(method, random, n, ties == Ties::Heavy);
+        if let Some(Shape::Integer { least, .. }) = shape(method, "draws") {
+            input.settings.push(("draws", least.to_string()));
+        }
+        input
+    }
+
+    fn suited(method: &Registered, random: &mut Random, n: usize, heavy: bool) -> Self {
         match (method.card.key, method.card.scale) {
             ("cochran-armitage", _) => Input::events_among_trials(random, n, heavy),
             ("reverse-arrangements", _) => {
@@ -137,7 +144,7 @@ impl Input {
     /// The same with one more parameter, if the test has it.
     pub fn with(&self, method: &Registered, name: &'static str, value: &str) -> Self {
         let mut input = self.clone();
-        if method.parameters.iter().any(|parameter| parameter.name == name) {
+        if shape(method, name).is_some() {
             input.settings.push((name, value.to_owned()));
         }
         input
@@ -172,6 +179,19 @@ impl Input {
     pub fn judge(&self, method: &Registered, seek: Seek) -> Result<Outcome, Refusal> {
         let test = method.read(&self.arguments()).unwrap_or_else(|error| panic!("{}: {error}", method.card.key));
         test.judge(&self.series(), &Question { seek, ..Question::default() })
+    }
+}
+
+/// The form of a parameter's values, if the test has the parameter.
+pub fn shape(method: &Registered, name: &str) -> Option<Shape> {
+    method.parameters.iter().find(|parameter| parameter.name == name).map(|parameter| (parameter.shape)())
+}
+
+/// The forms of the p-value that a test offers, each as the word to ask for it.
+pub fn forms_of_p(method: &Registered) -> Vec<&'static str> {
+    match shape(method, "p_by") {
+        Some(Shape::Choice(words)) => words.iter().map(|choice| choice.word).collect(),
+        _ => vec!["best"],
     }
 }
 

@@ -185,7 +185,6 @@ fn each_wrong_request_has_its_code() {
         ("readings=1;2&moments=2025;2024", "moments-out-of-order"),
         ("readings=1;2&moments=2025;2025", "moments-repeated"),
         ("readings=1;2&blocks=a", "blocks-count"),
-        ("readings=1;2&blocks=a;b", "several-columns"),
         ("readings=1;2&give=slope_of_rises", "give-unknown"),
     ] {
         service.get(&format!("/trend/cox-stuart?{query}")).problem(400, code);
