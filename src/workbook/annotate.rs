@@ -91,7 +91,7 @@ pub fn annotate(
         let mut cells = read_and_verify(input, &skip, progress, &mut annotated.notes)?;
         let plan = plan.and_then(|name| take_plan(&mut cells, &name));
         let dates_from_1904 = book.dates_from_1904();
-        write(book, &cells, plan, dates_from_1904, settings, made_on, output, annotated, progress)
+        write(book, cells, plan, dates_from_1904, settings, made_on, output, annotated, progress)
     } else {
         let cells = read_cells(input, format, &[], progress, &mut annotated.notes)?;
         annotated.notes.push("The file is not of a form that sheets can be added to; the copy is a new workbook with its values and the new sheets.".into());
@@ -99,7 +99,7 @@ pub fn annotate(
             cells.sheets.iter().map(|sheet| (sheet.name.as_str(), Box::new(cells.all(sheet)) as Box<dyn Iterator<Item = _>>));
         let values = render::values_only(sheets)?;
         let book = Workbook::open(Cursor::new(values), Limits::default())?;
-        write(book, &cells, None, false, settings, made_on, output, annotated, progress)
+        write(book, cells, None, false, settings, made_on, output, annotated, progress)
     }
 }
 
@@ -187,7 +187,7 @@ fn take_plan(cells: &mut Cells, name: &str) -> Option<Plan> {
 #[allow(clippy::too_many_arguments, reason = "the last steps need what all earlier ones found")]
 fn write<R: Read + Seek>(
     book: Workbook<R>,
-    cells: &Cells,
+    cells: Cells,
     plan: Option<Plan>,
     date_1904: bool,
     settings: &Settings,
@@ -196,9 +196,10 @@ fn write<R: Read + Seek>(
     mut annotated: Annotated,
     progress: &mut dyn FnMut(Step),
 ) -> Result<Annotated, Problem> {
-    let survey = survey::survey(cells);
+    let Survey { indicators, remarks } = survey::survey(&cells);
     let adjustment = adjustment(settings, plan.as_ref());
-    let Chosen { rows, unjudged } = choose(cells, &survey, plan, settings);
+    let Chosen { rows, unjudged } = choose(&cells, indicators, plan, settings);
+    drop(cells);
     let total = rows.len() as u64;
     let mut judged: Vec<Judged> = Vec::with_capacity(rows.len());
     for (done, (indicator, row)) in rows.into_iter().enumerate() {
@@ -212,12 +213,12 @@ fn write<R: Read + Seek>(
         judged: &judged,
         adjustment,
         names: &names,
-        remarks: &survey.remarks,
+        remarks: &remarks,
         unjudged: &unjudged,
         date_1904,
         made_on,
     })?;
-    annotated.remarks = survey.remarks;
+    annotated.remarks = remarks;
     annotated.conclusions = judged.iter().map(row).collect();
     drop(judged);
     let graft_plan = graft::Plan { donor: &donor.bytes, sheets: &donor.sheets };
@@ -239,11 +240,11 @@ struct Chosen {
 }
 
 /// Which indicators are judged, and by which rows: those of the plan first, then what was found beside them.
-fn choose(cells: &Cells, survey: &Survey, plan: Option<Plan>, settings: &Settings) -> Chosen {
+fn choose(cells: &Cells, indicators: Vec<Indicator>, plan: Option<Plan>, settings: &Settings) -> Chosen {
     let mut chosen = Chosen { rows: Vec::new(), unjudged: Vec::new() };
-    let mut found: Vec<Option<&Indicator>> = survey.indicators.iter().map(Some).collect();
+    let mut found: Vec<Option<Indicator>> = indicators.into_iter().map(Some).collect();
     for row in plan.map(|plan| plan.rows).unwrap_or_default() {
-        let matched = found.iter().position(|indicator| indicator.is_some_and(|indicator| is_row_of(&row, indicator)));
+        let matched = found.iter().position(|indicator| indicator.as_ref().is_some_and(|indicator| is_row_of(&row, indicator)));
         let grown = matched.and_then(|at| found[at].take());
         if row.judge.trim().eq_ignore_ascii_case("no") {
             chosen.unjudged.push(row);
@@ -253,7 +254,8 @@ fn choose(cells: &Cells, survey: &Survey, plan: Option<Plan>, settings: &Setting
         chosen.rows.push((indicator, row));
     }
     for indicator in found.into_iter().flatten() {
-        chosen.rows.push((indicator.clone(), draft(indicator, &settings.defaults)));
+        let row = draft(&indicator, &settings.defaults);
+        chosen.rows.push((indicator, row));
     }
     chosen
 }
@@ -268,18 +270,16 @@ fn is_row_of(row: &PlanRow, indicator: &Indicator) -> bool {
 }
 
 /// The indicator that a row states. Where the cells are still those that were found, readings added since are taken in.
-fn from_row(cells: &Cells, mut row: PlanRow, found: Option<&Indicator>, settings: &Settings) -> (Indicator, PlanRow) {
-    if let Some(found) = found
-        && cells_as_found(&row)
-    {
-        let fresh = draft(found, &settings.defaults);
+fn from_row(cells: &Cells, mut row: PlanRow, mut found: Option<Indicator>, settings: &Settings) -> (Indicator, PlanRow) {
+    if let Some(mut indicator) = found.take_if(|_| cells_as_found(&row)) {
+        let fresh = draft(&indicator, &settings.defaults);
         let as_drafted = row.grades == fresh.grades;
         row = PlanRow { cells: fresh.cells, moments: fresh.moments, names: fresh.names, origin: fresh.origin, ..row };
         if as_drafted {
-            let mut indicator = found.clone();
             indicator.series.name.clone_from(&row.indicator);
             return (indicator, row);
         }
+        found = Some(indicator);
     }
     match survey::indicator_at(cells, &row) {
         Ok(mut indicator) => {

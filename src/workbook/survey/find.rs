@@ -140,6 +140,17 @@ fn find_wide(cells: &Cells, sheet: &SheetCells, table: &Table, survey: &mut Surv
     {
         rows = Rows::Up { first: table.rows.1, count };
         moments = Ok(Arc::new(Moments::clone(read).reversed()));
+    } else if let Ok(read) = &moments
+        && let Some(named) = names_its_rows(cells, sheet, table)
+        && read.check_order(true, None).is_err()
+    {
+        let letters = crate::workbook::reference::column_letters(named);
+        let (first, last) = (table.rows.0 + 1, table.rows.1 + 1);
+        survey.remarks.push(format!(
+            "Rows {first} to {last} of the sheet {} were left out: column {letters} names each of them, and their dates are in no order.",
+            sheet.name
+        ));
+        return;
     }
     for (_, column) in table.columns.iter().enumerate().filter(|(index, _)| Some(*index) != table.moments) {
         let look = look(cells, sheet, column.column, table.rows);
@@ -162,6 +173,17 @@ fn find_wide(cells: &Cells, sheet: &SheetCells, table: &Table, survey: &mut Surv
             }
         }
     }
+}
+
+/// The column whose words tell the rows of a table apart, as in a list of houses or machines rather than of weeks.
+fn names_its_rows(cells: &Cells, sheet: &SheetCells, table: &Table) -> Option<u32> {
+    let rows = (table.rows.1 - table.rows.0 + 1) as usize;
+    let others = table.columns.iter().enumerate().filter(|(index, _)| Some(*index) != table.moments);
+    let mut columns = others.map(|(_, column)| column.column);
+    columns.find(|&column| {
+        let look = look(cells, sheet, column, table.rows);
+        look.words == rows && look.different_words == rows
+    })
 }
 
 /// Whether a column is no indicator, and the reason if it is worth saying.
