@@ -319,7 +319,7 @@ fn planning(signs: &Signs, question: &Question, parameters: &Parameters) -> Vec<
         Seek::Either => ("least_alike", "Least number of rises, or of falls, to reach the risk"),
     };
     let share = if question.seek == Seek::Falling { 1.0 - parameters.notice.0 } else { parameters.notice.0 };
-    let chance = chance_to_notice(trials, share, side, question.seek);
+    let chance = needed.map_or(0.0, |needed| chance_of_as_many(needed, trials, share, question.seek));
     let pairs_advised = pairs_to_notice(share, side, question.seek, parameters.power.0, parameters.most_pairs.0.into());
     let readings_a_pair = if parameters.pairs == PairBy::Thirds { 3 } else { 2 };
     vec![
@@ -348,9 +348,8 @@ pub fn least_to_reach(trials: u64, side: f64) -> Option<u64> {
     Some(low)
 }
 
-/// The chance of reaching the risk when each pair rises with chance `share`.
-fn chance_to_notice(trials: u64, share: f64, side: f64, seek: Seek) -> f64 {
-    let Some(needed) = least_to_reach(trials, side) else { return 0.0 };
+/// The chance of at least `needed` like signs, of the sort that is sought, when each pair rises with chance `share`.
+fn chance_of_as_many(needed: u64, trials: u64, share: f64, seek: Seek) -> f64 {
     let truth = Binomial::new(trials, share);
     match seek {
         Seek::Rising => truth.upper_tail(needed),
@@ -455,7 +454,10 @@ mod tests {
             for side in [0.005, 0.025, 0.03125, 0.05, 0.2] {
                 for share in [0.1, 0.4, 0.6, 0.75, 0.9] {
                     for power in [0.5, 0.8, 0.95] {
-                        let plain = (1..=500).find(|&pairs| chance_to_notice(pairs, share, side, seek) >= power);
+                        let chance = |pairs| {
+                            least_to_reach(pairs, side).map_or(0.0, |needed| chance_of_as_many(needed, pairs, share, seek))
+                        };
+                        let plain = (1..=500).find(|&pairs| chance(pairs) >= power);
                         let carried = pairs_to_notice(share, side, seek, power, 500);
                         assert_eq!(carried, plain, "{seek:?} side {side} share {share} power {power}");
                     }

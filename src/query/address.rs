@@ -4,8 +4,6 @@
 //! percent sign that no two hexadecimal digits follow stands for itself, so that `12%;15%` typed into a formula survives.
 //! Decoding therefore never fails; bytes that are not UTF-8 become U+FFFD and are answered where they are used.
 
-use std::borrow::Cow;
-
 use crate::method::declaration::{Argument, Arguments};
 
 /// Reads `name=value&name=value`. A name without `=` has an empty value; empty pieces are skipped.
@@ -41,10 +39,7 @@ fn decode(bytes: &[u8]) -> String {
             (other, _) => (tail, decoded.push(*other)),
         };
     }
-    match String::from_utf8_lossy(&decoded) {
-        Cow::Borrowed(_) => String::from_utf8(decoded).unwrap_or_default(),
-        Cow::Owned(repaired) => repaired,
-    }
+    String::from_utf8(decoded).unwrap_or_else(|error| String::from_utf8_lossy(error.as_bytes()).into_owned())
 }
 
 fn hexadecimal(digit: u8) -> u8 {

@@ -22,7 +22,12 @@ pub fn split(text: &str) -> (Vec<Cell>, ListForm) {
     let cells: Vec<Cell> = match separator {
         None if text.trim().is_empty() => Vec::new(),
         None => vec![Cell::text(text)],
-        Some(separator) => text.split(separator).map(|item| Cell::text(unquote(item.trim()))).collect(),
+        Some(separator) => {
+            let count = text.bytes().filter(|&byte| char::from(byte) == separator).count() + 1;
+            let mut cells = Vec::with_capacity(count);
+            cells.extend(text.split(separator).map(|item| Cell::text(unquote(item.trim()))));
+            cells
+        }
     };
     let decimal_comma = separator != Some(',') && cells.iter().any(|cell| matches!(cell, Cell::Text(text) if text.contains(',')));
     (cells, ListForm { separator, decimal_comma })

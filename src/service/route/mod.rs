@@ -21,8 +21,8 @@ use crate::problem::{Problem, ProblemKind};
 
 /// Registers every path.
 pub fn configure(routes: &mut ServiceConfig, state: &State) {
+    trend::configure(routes);
     routes
-        .service(trend::resource())
         .service(adjust::resource())
         .service(methods::list())
         .service(methods::one())

@@ -1,7 +1,7 @@
 //! `GET` and `POST /trend/{name}`: readings in, a conclusion with its evidence out.
 
-use actix_web::web::{self, Data, Path, Payload};
-use actix_web::{HttpRequest, HttpResponse, Resource};
+use actix_web::web::{self, Data, Path, Payload, ServiceConfig};
+use actix_web::{HttpRequest, HttpResponse};
 use serde_json::json;
 
 use super::super::application::State;
@@ -18,23 +18,36 @@ use crate::query::request::shared_parameters;
 use crate::query::{address, read, request};
 use crate::reply::{self, Answer, Presentation, Reply};
 
-pub fn resource() -> Resource {
-    path("/trend/{name}", READ_AND_SEND).route(web::get().to(get)).route(web::head().to(head_of)).route(web::post().to(post))
+/// One path for each test, found by comparing, and one for all other names, which must be taken apart to be named.
+pub fn configure(routes: &mut ServiceConfig) {
+    for method in METHODS {
+        routes.service(
+            path(&format!("/trend/{}", method.card.key), READ_AND_SEND)
+                .route(web::get().to(move |request, state| get(method, request, state)))
+                .route(web::head().to(head_of))
+                .route(web::post().to(move |request, payload, state| post(method, request, payload, state))),
+        );
+    }
+    routes.service(web::resource("/trend/{name}").to(unknown));
 }
 
-async fn get(name: Path<String>, request: HttpRequest, state: Data<State>) -> HttpResponse {
-    let sent = Sent { arguments: address::arguments(request.query_string()), body: None, usual: negotiate::usual(&request) };
-    respond(&name, sent, &state).await
-}
-
-async fn head_of(name: Path<String>, request: HttpRequest) -> HttpResponse {
+async fn unknown(name: Path<String>, request: HttpRequest) -> HttpResponse {
     match request::method(&name) {
-        Ok(_) => head(negotiate::presentation(&request).reply.media_type()),
+        Ok(_) => respond::not_allowed(&request, READ_AND_SEND),
         Err(problem) => respond::problem_for(&request, &problem),
     }
 }
 
-async fn post(name: Path<String>, request: HttpRequest, payload: Payload, state: Data<State>) -> HttpResponse {
+async fn get(method: &'static Registered, request: HttpRequest, state: Data<State>) -> HttpResponse {
+    let sent = Sent { arguments: address::arguments(request.query_string()), body: None, usual: negotiate::usual(&request) };
+    respond(method, sent, &state).await
+}
+
+async fn head_of(request: HttpRequest) -> HttpResponse {
+    head(negotiate::presentation(&request).reply.media_type())
+}
+
+async fn post(method: &'static Registered, request: HttpRequest, payload: Payload, state: Data<State>) -> HttpResponse {
     let received = match body::media(&request) {
         Ok(media) => body::read(&request, payload, state.limits.body, state.limits.body_time).await.map(|body| (media, body)),
         Err(problem) => Err(problem),
@@ -43,7 +56,7 @@ async fn post(name: Path<String>, request: HttpRequest, payload: Payload, state:
         Ok((media, body)) => {
             let arguments = address::arguments(request.query_string());
             let body = Some((media, body.freeze()));
-            respond(&name, Sent { arguments, body, usual: negotiate::usual(&request) }, &state).await
+            respond(method, Sent { arguments, body, usual: negotiate::usual(&request) }, &state).await
         }
         Err(problem) => respond::problem_for(&request, &problem),
     }
@@ -89,12 +102,8 @@ fn judge(method: &Registered, arguments: &Arguments, usual: Reply, limits: &Limi
     reply::write(&report(&asked.series, &asked.understood, &finding), &presentation)
 }
 
-async fn respond(name: &str, sent: Sent, state: &Data<State>) -> HttpResponse {
+async fn respond(method: &'static Registered, sent: Sent, state: &Data<State>) -> HttpResponse {
     let presentation = Presentation::lenient(&sent.arguments, sent.usual);
-    let method = match request::method(name) {
-        Ok(method) => method,
-        Err(problem) => return respond::problem(&problem, &presentation),
-    };
     let judged = if sent.readings() <= state.limits.inline_readings {
         compute::inline(|| Ok(sent.judge(method, &state.limits)))
     } else {
