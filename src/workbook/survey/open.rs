@@ -1,5 +1,6 @@
 //! Opening a file and reading its cells once.
 
+use std::borrow::Cow;
 use std::fs::File;
 use std::io::{BufReader, Cursor, Read, Seek, SeekFrom};
 use std::panic::{AssertUnwindSafe, catch_unwind};
@@ -52,7 +53,11 @@ pub fn format(path: &Path) -> Result<Format, Error> {
         file.seek(SeekFrom::Start(0))?;
         return Ok(if names_binary_workbook(&mut file)? { Format::Xlsb } else { Format::Package });
     }
-    if wide_encoding(&head).is_some() || !head.contains(&0) { Ok(Format::Text) } else { Err(Error::Kind) }
+    if wide_encoding(&head).is_some() || four_byte_units(&head).is_some() || !head.contains(&0) {
+        Ok(Format::Text)
+    } else {
+        Err(Error::Kind)
+    }
 }
 
 /// UTF-16 by its mark, or by every second byte of the beginning being zero.
@@ -66,6 +71,36 @@ fn wide_encoding(bytes: &[u8]) -> Option<&'static encoding_rs::Encoding> {
         [0xFE, 0xFF, ..] => Some(encoding_rs::UTF_16BE),
         _ if pairs >= 2 && even * 10 >= pairs * 8 && odd * 10 <= pairs => Some(encoding_rs::UTF_16BE),
         _ if pairs >= 2 && odd * 10 >= pairs * 8 && even * 10 <= pairs => Some(encoding_rs::UTF_16LE),
+        _ => None,
+    }
+}
+
+/// The text of a file and the encoding in which it was read: by its mark, by its zeros, UTF-8 if it can be, else
+/// windows-1252.
+fn decode(bytes: &[u8]) -> (Cow<'_, str>, &'static str) {
+    if let Some(in_units) = four_byte_units(bytes) {
+        let units = bytes.chunks_exact(4).map(|unit| in_units([unit[0], unit[1], unit[2], unit[3]]));
+        let text = units.map(|unit| char::from_u32(unit).unwrap_or(char::REPLACEMENT_CHARACTER));
+        return (text.filter(|c| *c != '\u{feff}').collect(), "UTF-32");
+    }
+    let marked = encoding_rs::Encoding::for_bom(bytes).map(|(encoding, _)| encoding);
+    match (marked.or_else(|| wide_encoding(bytes)), std::str::from_utf8(bytes)) {
+        (Some(encoding), _) => (encoding.decode(bytes).0, encoding.name()),
+        (None, Ok(text)) => (text.into(), "UTF-8"),
+        (None, Err(_)) => (encoding_rs::WINDOWS_1252.decode(bytes).0, "windows-1252"),
+    }
+}
+
+/// How four bytes make a character, if the beginning has the mark of UTF-32 or the zeros that it has everywhere.
+fn four_byte_units(bytes: &[u8]) -> Option<fn([u8; 4]) -> u32> {
+    const LOOKED_AT: usize = 512;
+    let units = || bytes[..bytes.len().min(LOOKED_AT)].chunks_exact(4);
+    let everywhere = |zeros: fn(&[u8]) -> bool| units().len() >= 2 && units().all(zeros);
+    match bytes {
+        [0xFF, 0xFE, 0, 0, ..] => Some(u32::from_le_bytes),
+        [0, 0, 0xFE, 0xFF, ..] => Some(u32::from_be_bytes),
+        _ if everywhere(|unit| unit[..2] != [0, 0] && unit[2..] == [0, 0]) => Some(u32::from_le_bytes),
+        _ if everywhere(|unit| unit[..2] == [0, 0] && unit[2..] != [0, 0]) => Some(u32::from_be_bytes),
         _ => None,
     }
 }
@@ -267,14 +302,7 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
         return Err(Error::TooManyCells(MOST_CELLS));
     }
     let bytes = std::fs::read(path)?;
-    let marked = encoding_rs::Encoding::for_bom(&bytes).map(|(encoding, _)| encoding);
-    let (text, encoding) = match marked.or_else(|| wide_encoding(&bytes)) {
-        Some(encoding) => (encoding.decode(&bytes).0, encoding.name()),
-        None => match std::str::from_utf8(&bytes) {
-            Ok(text) => (text.into(), "UTF-8"),
-            Err(_) => (encoding_rs::WINDOWS_1252.decode(&bytes).0, "windows-1252"),
-        },
-    };
+    let (text, encoding) = decode(&bytes);
     let separator = separator(&text);
     let mut cells = Cells::default();
     let name = path.file_stem().map(|stem| stem.to_string_lossy().into_owned()).unwrap_or_default();
@@ -319,4 +347,29 @@ fn separator(text: &str) -> u8 {
         (agreeing, usual)
     };
     [b';', b'\t', b',', b'|'].into_iter().max_by_key(score).filter(|separator| score(separator).0 > 0).unwrap_or(b',')
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn text_is_read_in_every_encoding() {
+        let text = "Zürich;≤ 5\n1;2";
+        let marked = format!("\u{feff}{text}");
+        let utf16 = |bytes: fn(u16) -> [u8; 2]| marked.encode_utf16().flat_map(bytes).collect::<Vec<u8>>();
+        let utf32 = |bytes: fn(u32) -> [u8; 4]| marked.chars().flat_map(|c| bytes(c.into())).collect::<Vec<u8>>();
+        for (bytes, encoding) in [
+            (text.as_bytes().to_vec(), "UTF-8"),
+            (marked.as_bytes().to_vec(), "UTF-8"),
+            (utf16(u16::to_le_bytes), "UTF-16LE"),
+            (utf16(u16::to_be_bytes), "UTF-16BE"),
+            (utf32(u32::to_le_bytes), "UTF-32"),
+            (utf32(u32::to_be_bytes), "UTF-32"),
+            (utf32(u32::to_le_bytes)[4..].to_vec(), "UTF-32"),
+        ] {
+            assert_eq!(decode(&bytes), (text.into(), encoding));
+        }
+        assert_eq!(decode(b"Z\xFCrich"), ("Zürich".into(), "windows-1252"));
+    }
 }
