@@ -10,6 +10,7 @@ use crate::finding::sentence::number;
 use crate::method::declaration::{Argument, Arguments};
 use crate::problem::{Problem, ProblemKind};
 use crate::workbook::annotate::{Annotated, annotate, remove};
+use crate::workbook::package_kind::PackageKind;
 use crate::workbook::settings::Settings;
 
 /// Gives a workbook back with new sheets of conclusions, statistics, pairings and charts.
@@ -111,7 +112,11 @@ impl Annotate {
 fn beside(workbook: &Path, remove: bool) -> PathBuf {
     let stem = workbook.file_stem().unwrap_or_default().to_string_lossy();
     let extension = workbook.extension().map(|extension| extension.to_string_lossy().to_lowercase());
-    let kept = extension.as_deref().filter(|extension| ["xlsx", "xlsm", "xltx", "xltm"].contains(extension)).unwrap_or("xlsx");
+    let kept = PackageKind::ALL
+        .map(PackageKind::ending)
+        .into_iter()
+        .find(|ending| extension.as_deref() == Some(ending))
+        .unwrap_or("xlsx");
     let suffix = if remove { "plain" } else { "trends" };
     workbook.with_file_name(format!("{stem}-{suffix}.{kept}"))
 }

@@ -42,7 +42,7 @@ pub fn annotation() -> Annotation {
             let now = jiff::ZonedDateTime::now().datetime();
             let annotated = annotate(input, output, &settings, now, &mut |_| {})?;
             let attention = annotated.conclusions.iter().filter(|row| row.needs_attention).count();
-            Ok(AnnotatedSummary { indicators: annotated.conclusions.len(), attention })
+            Ok(AnnotatedSummary { indicators: annotated.conclusions.len(), attention, kind: annotated.kind })
         }),
         parameters: Annotating::parameters().concat(),
     }

@@ -5,6 +5,7 @@ use std::sync::Arc;
 
 use crate::method::declaration::{Arguments, Parameter};
 use crate::problem::Problem;
+use crate::workbook::package_kind::PackageKind;
 
 /// Reads the workbook at the first path and writes the annotated one to the second, as the arguments ask. It checks the
 /// arguments' names and values itself.
@@ -17,6 +18,8 @@ pub struct AnnotatedSummary {
     pub indicators: usize,
     /// How many of them show a trend in the direction that is not wanted.
     pub attention: usize,
+    /// What kind of workbook it is.
+    pub kind: PackageKind,
 }
 
 /// An annotator with the parameters that it takes.

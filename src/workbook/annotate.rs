@@ -11,6 +11,7 @@ use jiff::civil::DateTime;
 use super::graft::{self, Limits, Workbook};
 use super::indicator::{Indicator, Judged};
 use super::judge::{cells_as_found, draft, judge, together};
+use super::package_kind::PackageKind;
 use super::plan::{Plan, PlanRow};
 use super::render::{self, SheetNames};
 use super::settings::Settings;
@@ -66,6 +67,8 @@ pub struct Annotated {
     pub notes: Vec<String>,
     /// What was noticed while looking for indicators, in whole sentences.
     pub remarks: Vec<String>,
+    /// What kind of package the copy is.
+    pub kind: PackageKind,
 }
 
 /// Annotates a workbook: reads `input`, writes `output`, which must be another file.
@@ -84,6 +87,7 @@ pub fn annotate(
     let mut annotated = Annotated::default();
     if format == Format::Package {
         let book = Workbook::open(BufReader::new(File::open(input).map_err(graft::Error::from)?), Limits::default())?;
+        annotated.kind = book.package_kind();
         check_allowed(&book, settings, &mut annotated.notes)?;
         let earlier: Vec<String> = book.earlier_sheets().iter().map(|sheet| sheet.name.clone()).collect();
         let plan = earlier.iter().find(|name| SheetNames::is_plan(name)).cloned();

@@ -80,12 +80,33 @@ fn the_program_prints_where_it_listens_and_how_to_try_it() {
     assert!(answer.starts_with("HTTP/1.1 200"), "{answer}");
 }
 
+/// Sent without a name, the macro-enabled copy comes back as one: under another ending no program would open it.
+#[test]
+fn a_macro_enabled_workbook_comes_back_as_one() {
+    let service = Serving::start();
+    let book = std::fs::read(format!("{EXAMPLES}/hotel/visits-macros.xlsm")).unwrap();
+    let answer = send(&service.address, "POST", "/annotate", &book);
+    let head = String::from_utf8_lossy(&answer[..1000]).to_lowercase();
+    assert!(head.contains("content-type: application/vnd.ms-excel.sheet.macroenabled.12"), "{head}");
+    assert!(head.contains("filename=\"workbook-trends.xlsm\"") && head.contains("risefall-indicators: 10"), "{head}");
+    let package = &answer[answer.windows(4).position(|window| window == b"\r\n\r\n").unwrap() + 4..];
+    let mut annotated: calamine::Xlsx<_> = calamine::Reader::new(std::io::Cursor::new(package.to_vec())).unwrap();
+    assert!(calamine::Reader::vba_project(&mut annotated).unwrap().is_some());
+    assert!(calamine::Reader::sheet_names(&annotated).contains(&"Trend conclusions".to_owned()));
+}
+
 fn ask(address: &str, path: &str) -> String {
+    String::from_utf8_lossy(&send(address, "GET", path, b"")).into_owned()
+}
+
+fn send(address: &str, verb: &str, path: &str, body: &[u8]) -> Vec<u8> {
     use std::io::{Read, Write};
     let host = address.trim_start_matches("http://");
     let mut stream = std::net::TcpStream::connect(host).unwrap();
-    write!(stream, "GET {path} HTTP/1.1\r\nHost: {host}\r\nConnection: close\r\n\r\n").unwrap();
-    let mut answer = String::new();
-    stream.read_to_string(&mut answer).unwrap();
+    let length = body.len();
+    write!(stream, "{verb} {path} HTTP/1.1\r\nHost: {host}\r\nConnection: close\r\nContent-Length: {length}\r\n\r\n").unwrap();
+    stream.write_all(body).unwrap();
+    let mut answer = Vec::new();
+    stream.read_to_end(&mut answer).unwrap();
     answer
 }

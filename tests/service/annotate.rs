@@ -7,6 +7,7 @@ use std::sync::Arc;
 use risefall::method::declaration::{Argument, Arguments};
 use risefall::problem::{Problem, ProblemKind};
 use risefall::service::{AnnotatedSummary, Annotation};
+use risefall::workbook::package_kind::PackageKind;
 
 use crate::helpers::{Answer, TestService};
 
@@ -26,7 +27,8 @@ fn telling(input: &Path, output: &Path, arguments: &Arguments) -> Result {
         arguments.names().map(|name| format!("{name}={}", arguments.get(name).map(Argument::quote).unwrap())).collect();
     let told = [format!("{ending} {} ", sent.join(" ")).into_bytes(), std::fs::read(input).unwrap()].concat();
     std::fs::write(output, told).unwrap();
-    Ok(AnnotatedSummary { indicators: 12, attention: 1 })
+    let kind = PackageKind::ALL.into_iter().find(|kind| kind.ending() == ending).unwrap_or_default();
+    Ok(AnnotatedSummary { indicators: 12, attention: 1, kind })
 }
 
 fn form(parts: &[(&str, &[u8])]) -> Vec<u8> {

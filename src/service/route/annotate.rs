@@ -20,6 +20,7 @@ use crate::method::declaration::{Arguments, Declared};
 use crate::problem::Problem;
 use crate::query::address;
 use crate::reply::{Fault, Presentation, Reply};
+use crate::workbook::package_kind::PackageKind;
 
 crate::parameters! {
     /// What sending a workbook takes beyond what annotating it takes.
@@ -30,14 +31,6 @@ crate::parameters! {
         fault: Fault = Fault::Status,
     }
 }
-
-/// Workbooks that keep their kind; all others come back as the first of these.
-const KINDS: [(&str, &str); 4] = [
-    ("xlsx", "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet"),
-    ("xlsm", "application/vnd.ms-excel.sheet.macroEnabled.12"),
-    ("xltx", "application/vnd.openxmlformats-officedocument.spreadsheetml.template"),
-    ("xltm", "application/vnd.ms-excel.template.macroEnabled.12"),
-];
 
 const INDICATORS: &str = "risefall-indicators";
 const ATTENTION: &str = "risefall-attention";
@@ -67,8 +60,7 @@ async fn annotate(
     if let Some(name) = Sending::read(arguments)?.file {
         upload.rename(&name)?;
     }
-    let (kind, media_type) = kind(&upload.path);
-    let output = upload.beside(&format!("annotated.{kind}"));
+    let output = upload.beside("annotated");
     let work = {
         let (annotate, input, output) = (annotate.clone(), upload.path.clone(), output.clone());
         let asked = others(arguments);
@@ -78,8 +70,8 @@ async fn annotate(
     let file = std::fs::File::open(&output).map_err(|_| compute::broken())?;
     let size = file.metadata().map_err(|_| compute::broken())?.len();
     let mut response = HttpResponse::Ok();
-    response.insert_header((CONTENT_TYPE, HeaderValue::from_static(media_type)));
-    response.insert_header((CONTENT_DISPOSITION, disposition(&upload.name, kind)));
+    response.insert_header((CONTENT_TYPE, HeaderValue::from_static(summary.kind.media_type())));
+    response.insert_header((CONTENT_DISPOSITION, disposition(&upload.name, summary.kind)));
     response.insert_header((INDICATORS, summary.indicators.to_string()));
     response.insert_header((ATTENTION, summary.attention.to_string()));
     Ok(response.body(SizedStream::new(size, Box::pin(upload::pieces(file, upload)))))
@@ -95,16 +87,10 @@ fn others(arguments: &Arguments) -> Arguments {
     arguments.clone().into_pairs().filter(|(name, _)| !own(name)).collect()
 }
 
-/// The kind of the workbook that comes back, and its media type.
-fn kind(input: &Path) -> (&'static str, &'static str) {
-    let own = input.extension().and_then(|extension| extension.to_str()).unwrap_or_default();
-    KINDS.into_iter().find(|(kind, _)| *kind == own).unwrap_or(KINDS[0])
-}
-
 /// `visits.xlsx` comes back as `visits-trends.xlsx`, named in ASCII and, where that loses something, in full (RFC 6266).
-fn disposition(name: &str, kind: &str) -> ContentDisposition {
+fn disposition(name: &str, kind: PackageKind) -> ContentDisposition {
     let stem = name.rsplit_once('.').map_or(name, |(stem, _)| stem);
-    let full = format!("{}-trends.{kind}", if stem.is_empty() { "workbook" } else { stem });
+    let full = format!("{}-trends.{}", if stem.is_empty() { "workbook" } else { stem }, kind.ending());
     let plain: String =
         full.chars().map(|c| if c.is_ascii_graphic() && !"\"\\%;".contains(c) || c == ' ' { c } else { '_' }).collect();
     let mut parameters = vec![DispositionParam::Filename(plain.clone())];
@@ -127,7 +113,7 @@ pub fn operation(annotation: &Annotation) -> Operation {
         "application/octet-stream": { "schema": file },
     });
     let mut answer = json!({});
-    for (_, media_type) in KINDS {
+    for media_type in PackageKind::ALL.map(PackageKind::media_type) {
         body[media_type] = json!({ "schema": file });
         answer[media_type] = json!({ "schema": { "type": "string", "format": "binary" } });
     }

@@ -41,6 +41,8 @@ pub struct Host {
     pub relationships: Vec<Relationship>,
     /// The sheets in order.
     pub sheets: Vec<Sheet>,
+    /// The content type of the workbook part, which tells a template and a macro-enabled workbook from others.
+    pub content_type: String,
 }
 
 impl Host {
@@ -77,7 +79,7 @@ impl Host {
             ours: marked.contains(&(index as u32)),
         });
         let sheets = sheets.collect();
-        Ok(Host { part, text, root, relationships, sheets })
+        Ok(Host { part, text, root, relationships, sheets, content_type: kind })
     }
 
     /// Whether the workbook is of the strict variant.

@@ -33,6 +33,8 @@ use host::{AddedSheet, Host, MARKER};
 use package::{Package, folder, key, relationships_part, relative, write_part};
 use tree::{Edits, PartText, escape};
 
+use super::package_kind::PackageKind;
+
 const TYPES: &str = "[Content_Types].xml";
 /// The first segments of relationship types and namespaces, transitional and strict.
 const VARIANTS: [(&str, &str); 3] = [
@@ -83,6 +85,11 @@ impl<R: Read + Seek> Workbook<R> {
     /// The sheets of an earlier annotation, which will be replaced.
     pub fn earlier_sheets(&self) -> &[Sheet] {
         &self.earlier
+    }
+
+    /// What kind of package it is.
+    pub fn package_kind(&self) -> PackageKind {
+        PackageKind::of_part(&self.host.content_type)
     }
 
     /// Whether dates count from 1904.
