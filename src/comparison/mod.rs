@@ -8,8 +8,11 @@ pub mod order;
 pub mod pairs;
 pub mod ranked_blocks;
 pub mod rates;
+pub mod rises;
 pub mod runs;
 pub mod shares;
+pub mod signs;
+pub mod slopes;
 pub mod steps;
 
 pub use events::{Events, Truncation};
@@ -19,4 +22,6 @@ pub use pairs::{Pairing, Pairings};
 pub use rates::{Rate, Rates};
 pub use runs::Run;
 pub use shares::{Share, Shares};
+pub use signs::Signs;
+pub use slopes::{Point, Slopes};
 pub use steps::Steps;

@@ -25,7 +25,7 @@ use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
     Table,
 };
-use crate::comparison::{Concordance, Groups, Order};
+use crate::comparison::{Concordance, Groups, Order, Signs};
 use crate::null_distribution::ordered_table::{MOST_PRODUCTS, effort, rises_less_falls};
 use crate::null_distribution::{Attained, By, normal};
 use crate::reading::Series;
@@ -206,15 +206,12 @@ impl Compared {
     /// The variance of rises less falls over all ways to deal the readings to the moments (Daniels 1944): it needs, for
     /// readings and for moments, the number of ordered pairs that differ and the sum of the squared sums of signs.
     fn variance_of_s(&self, ties: TieCorrection) -> f64 {
-        let n = self.groups.of.len() as f64;
         let readings = match (&self.order, ties) {
             (_, TieCorrection::Ignored) => Signs::of_sizes(&vec![1; self.groups.of.len()]),
             (Some(order), TieCorrection::Corrected) => Signs::of_sizes(&order.sizes),
-            (None, TieCorrection::Corrected) => Signs::of_pairs(&self.groups),
+            (None, TieCorrection::Corrected) => Signs::of_values(&self.groups.values),
         };
-        let moments = Signs::of_sizes(&self.groups.sizes);
-        let by_triples = if n > 2.0 { readings.triples() * moments.triples() / (n * (n - 1.0) * (n - 2.0)) } else { 0.0 };
-        by_triples + readings.differing * moments.differing / (2.0 * n * (n - 1.0))
+        readings.variance_with(&Signs::of_sizes(&self.groups.sizes))
     }
 
     fn share_facts(&self, confidence: f64) -> [Fact; 3] {
@@ -318,51 +315,6 @@ impl Compared {
             cautions.push("Every moment has one reading; the test is then that of Mann and Kendall.".into());
         }
         cautions
-    }
-}
-
-/// Signs of the differences among n things, summed up as the variance needs them.
-struct Signs {
-    /// Ordered pairs that differ.
-    differing: f64,
-    /// The sum over all things of the square of (how many are below it, less how many are above it).
-    squared_sums: f64,
-}
-
-impl Signs {
-    fn of_sizes(sizes: &[usize]) -> Self {
-        let n: usize = sizes.iter().sum();
-        let mut below = 0;
-        let mut signs = Signs { differing: 0.0, squared_sums: 0.0 };
-        for &size in sizes {
-            let above = n - below - size;
-            signs.differing += size as f64 * (n - size) as f64;
-            signs.squared_sums += size as f64 * (below as f64 - above as f64).powi(2);
-            below += size;
-        }
-        signs
-    }
-
-    fn of_pairs(groups: &Groups) -> Self {
-        let mut signs = Signs { differing: 0.0, squared_sums: 0.0 };
-        for value in &groups.values {
-            let (mut sum, mut differing) = (0.0, 0.0);
-            for other in &groups.values {
-                match value.compare(*other) {
-                    Some(std::cmp::Ordering::Less) => (sum, differing) = (sum - 1.0, differing + 1.0),
-                    Some(std::cmp::Ordering::Greater) => (sum, differing) = (sum + 1.0, differing + 1.0),
-                    _ => {}
-                }
-            }
-            signs.differing += differing;
-            signs.squared_sums += sum * sum;
-        }
-        signs
-    }
-
-    /// The sum over ordered triples i, j, k of the product of the signs of (i, j) and (i, k).
-    fn triples(&self) -> f64 {
-        self.squared_sums - self.differing
     }
 }
 

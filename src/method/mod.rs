@@ -6,16 +6,20 @@
 pub mod change;
 pub mod choices;
 pub mod declaration;
+pub mod dependence;
 pub mod outcome;
 pub mod question;
 pub mod screen;
+pub mod slope;
 pub mod turning;
 
 pub mod cochran_armitage;
 pub mod cox_stuart;
 pub mod difference_signs;
 pub mod jonckheere_terpstra;
+pub mod kendall;
 pub mod laplace;
+pub mod mann_kendall;
 pub mod military_handbook;
 pub mod page;
 pub mod pettitt;
@@ -37,6 +41,7 @@ use crate::reading::Series;
 /// Every test, in the order in which they are listed.
 pub static METHODS: &[Registered] = &[
     Registered::new::<cox_stuart::CoxStuart>(),
+    Registered::new::<mann_kendall::MannKendall>(),
     Registered::new::<jonckheere_terpstra::JonckheereTerpstra>(),
     Registered::new::<page::Page>(),
     Registered::new::<cochran_armitage::CochranArmitage>(),

@@ -10,6 +10,7 @@ mod difference_signs;
 mod event_trend;
 mod family;
 mod jonckheere_terpstra;
+mod mann_kendall;
 mod page;
 mod pettitt;
 mod poisson_trend;
