@@ -196,3 +196,8 @@ fn pair_by_pair(values: &[Value], moment_sizes: &[usize]) -> (u64, u64) {
     }
     (rises, falls)
 }
+
+/// A probability in a sentence.
+pub fn short(p: f64) -> String {
+    if p >= 0.001 { format!("{p:.3}") } else { format!("{p:.1e}") }
+}

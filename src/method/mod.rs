@@ -3,12 +3,14 @@
 //! To add a test: write its file, add its `mod` line and its line in [`METHODS`], and a folder of published examples
 //! under `tests/published`. Route, parser, help, OpenAPI, plan, sheet and page follow from the declaration.
 
+pub mod blocked_kendall;
 pub mod change;
 pub mod choices;
 pub mod declaration;
 pub mod dependence;
 pub mod outcome;
 pub mod question;
+pub mod scores_covariance;
 pub mod screen;
 pub mod slope;
 pub mod turning;
@@ -22,13 +24,17 @@ pub mod laplace;
 pub mod mann_kendall;
 pub mod military_handbook;
 pub mod page;
+pub mod partial_kendall;
 pub mod pettitt;
 pub mod poisson_trend;
 pub mod rank_von_neumann;
+pub mod regional_kendall;
 pub mod reverse_arrangements;
 pub mod runs_about_median;
 pub mod runs_up_down;
+pub mod seasonal_kendall;
 pub mod spearman;
+pub mod theil_sen;
 pub mod turning_points;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
@@ -42,6 +48,10 @@ use crate::reading::Series;
 pub static METHODS: &[Registered] = &[
     Registered::new::<cox_stuart::CoxStuart>(),
     Registered::new::<mann_kendall::MannKendall>(),
+    Registered::new::<theil_sen::TheilSen>(),
+    Registered::new::<seasonal_kendall::SeasonalKendall>(),
+    Registered::new::<regional_kendall::RegionalKendall>(),
+    Registered::new::<partial_kendall::PartialKendall>(),
     Registered::new::<jonckheere_terpstra::JonckheereTerpstra>(),
     Registered::new::<page::Page>(),
     Registered::new::<cochran_armitage::CochranArmitage>(),

@@ -80,10 +80,29 @@ impl Lattice {
         Lattice { first: self.first * factor, step: self.step * factor, mass: self.mass }
     }
 
-    /// The distribution of the sum of this statistic and an independent one with the same step.
+    /// The distribution of the sum of this statistic and an independent one.
     pub fn plus(&self, other: &Lattice) -> Lattice {
+        if self.step != other.step {
+            let step = common_step(self.step, other.step);
+            return self.with_step(step).plus(&other.with_step(step));
+        }
         Lattice { first: self.first + other.first, step: self.step, mass: convolve(&self.mass, &other.mass) }
     }
+
+    /// The same distribution with a step of which its own is a multiple.
+    fn with_step(&self, step: i64) -> Lattice {
+        let apart = (self.step / step) as usize;
+        let mut mass = vec![0.0; self.mass.len().saturating_sub(1) * apart + 1];
+        for (index, &chance) in self.mass.iter().enumerate() {
+            mass[index * apart] = chance;
+        }
+        Lattice { first: self.first, step, mass }
+    }
+}
+
+/// The largest step of which both are multiples.
+fn common_step(a: i64, b: i64) -> i64 {
+    if b == 0 { a } else { common_step(b, a % b) }
 }
 
 /// The chances of the sum of two independent counts from 0; only positive products are added.
@@ -117,6 +136,14 @@ mod tests {
         assert!((dice.tails(4).lower - 6.0 / 36.0).abs() < 1e-15);
         assert!((dice.mass(7) - 6.0 / 36.0).abs() < 1e-15);
         assert!((dice.chance_of(|sum| (sum - 7).abs() >= 5) - 2.0 / 36.0).abs() < 1e-15);
+    }
+
+    /// A coin that counts 0 or 6 and one that counts 0 or 4.
+    #[test]
+    fn steps_may_differ() {
+        let coins = Lattice::new(0, 6, vec![0.5, 0.5]).plus(&Lattice::new(0, 4, vec![0.5, 0.5]));
+        let points: Vec<_> = coins.points().filter(|(_, mass)| *mass > 0.0).collect();
+        assert_eq!(points, [(0, 0.25), (4, 0.25), (6, 0.25), (10, 0.25)]);
     }
 
     #[test]

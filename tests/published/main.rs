@@ -17,5 +17,7 @@ mod poisson_trend;
 mod rank_von_neumann;
 mod reference;
 mod runs_about_median;
+mod seasonal_kendall;
 mod spearman;
+mod theil_sen;
 mod turning;

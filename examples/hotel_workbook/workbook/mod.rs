@@ -19,6 +19,9 @@ use vba_project::{Kind, Module};
 pub const SHEETS: [(&str, &str); 4] =
     [(summary::NAME, "SummarySheet"), (weekly::NAME, "WeeklySheet"), (houses::NAME, "HousesSheet"), (notes::NAME, "NotesSheet")];
 
+/// Writes a sheet.
+type Filler = fn(&mut Worksheet, &[Week], &Style) -> Result<(), XlsxError>;
+
 /// Builds the workbook. The time of its creation is fixed, so that the same readings give the same bytes.
 ///
 /// # Errors
@@ -32,8 +35,7 @@ pub fn build(weeks: &[Week]) -> Result<Workbook, XlsxError> {
         .set_author("Guest service")
         .set_creation_datetime(&ExcelDateTime::from_ymd(2025, 12, 29)?);
     workbook.set_properties(&properties);
-    let fillers: [fn(&mut Worksheet, &[Week], &Style) -> Result<(), XlsxError>; 4] =
-        [summary::fill, weekly::fill, houses::fill, notes::fill];
+    let fillers: [Filler; 4] = [summary::fill, weekly::fill, houses::fill, notes::fill];
     for ((name, code_name), fill) in SHEETS.into_iter().zip(fillers) {
         let sheet = workbook.add_worksheet();
         sheet.set_name(name)?.set_vba_name(code_name)?;
