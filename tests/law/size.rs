@@ -8,7 +8,7 @@ use crate::simulation::simulate;
 /// An exact p claims a trend where there is none at most as often as the risk says; four standard errors are allowed for.
 #[test]
 fn exact_tests_keep_the_risk() {
-    let (series, risk) = (1_500, 0.05);
+    let (series, risk) = (800, 0.05);
     let most = 100.0 * (risk + 4.0 * (risk * (1.0 - risk) / f64::from(series)).sqrt());
     for method in METHODS {
         for n in [8, 20] {
