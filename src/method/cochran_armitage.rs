@@ -78,7 +78,7 @@ impl Method for CochranArmitage {
         claim: Claim::Trend,
         scale: ScaleNeeded::Counts,
         least_readings: 2,
-        exact: "Up to 500 million products of chances, about 1,000 events in 12 moments; more if events or non-events are few.",
+        exact: "Up to 500 million products of chances: about 300 events, or 300 trials without one, at 12 moments; 140 at 52 moments.",
         assumes: &[
             "Trials are independent of each other: one trial's event makes no other more or less probable.",
             "The trials of each moment are all counted, with or without an event.",
