@@ -5,13 +5,16 @@
 
 pub mod change;
 pub mod declaration;
+pub mod normal_change;
 pub mod outcome;
 pub mod question;
 pub mod screen;
 pub mod turning;
 
+pub mod buishand_range;
 pub mod cox_stuart;
 pub mod difference_signs;
+pub mod normal_homogeneity;
 pub mod pettitt;
 pub mod rank_von_neumann;
 pub mod runs_about_median;
@@ -36,6 +39,8 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<rank_von_neumann::RankVonNeumann>(),
     Registered::new::<difference_signs::DifferenceSigns>(),
     Registered::new::<pettitt::Pettitt>(),
+    Registered::new::<buishand_range::BuishandRange>(),
+    Registered::new::<normal_homogeneity::NormalHomogeneity>(),
 ];
 
 /// The test with a given key.

@@ -12,6 +12,7 @@ pub mod draws;
 pub mod hypergeometric;
 pub mod lattice;
 pub mod normal;
+pub mod normal_walk;
 mod pieces;
 pub mod probability;
 pub mod rank_products;

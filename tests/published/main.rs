@@ -5,9 +5,11 @@
 //! SciPy, statsmodels and R's base `stats`; `made_by` says which). `datasets.json` holds open series that they name,
 //! `tables.json` critical values and tail tables, each verified by enumeration.
 
+mod buishand_range;
 mod cox_stuart;
 mod difference_signs;
 mod family;
+mod normal_homogeneity;
 mod pettitt;
 mod rank_von_neumann;
 mod reference;
