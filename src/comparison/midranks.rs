@@ -14,17 +14,37 @@ pub type Classes = Vec<(u64, usize)>;
 /// Wilcoxon test for comparing arbitrarily singly-censored samples, *Biometrika* 52, 203-223. The ranks always add up to
 /// n(n + 1)/2. Time grows with n log n.
 pub fn doubled_midranks(values: &[Value]) -> Vec<u64> {
+    lower_and_higher(values).into_iter().map(|(lower, higher)| (values.len() + 1 + lower - higher) as u64).collect()
+}
+
+/// How many values share the lowest place, the next higher one, and so on; none of them is missing. `None` if being tied does
+/// not carry over: `<0.5` ties with 0.3 and with 0.4, which differ.
+pub fn tie_sizes(values: &[Value]) -> Option<Vec<usize>> {
+    let mut places = lower_and_higher(values);
+    places.sort_unstable();
+    let mut sizes = Vec::new();
+    for shared in places.chunk_by(|a, b| a.0 == b.0) {
+        if shared.iter().any(|(lower, higher)| values.len() - lower - higher != shared.len()) {
+            return None;
+        }
+        sizes.push(shared.len());
+    }
+    Some(sizes)
+}
+
+/// For each value, how many are certainly lower and how many are certainly higher.
+fn lower_and_higher(values: &[Value]) -> Vec<(usize, usize)> {
     let mut lowest: Vec<(f64, u8)> = values.iter().map(|&value| ends(value).0).collect();
     let mut highest: Vec<(f64, u8)> = values.iter().map(|&value| ends(value).1).collect();
     lowest.sort_by(order);
     highest.sort_by(order);
-    let rank = |&value: &Value| {
+    let count = |&value: &Value| {
         let (low, high) = ends(value);
         let lower = highest.partition_point(|end| order(end, &low).is_lt());
         let higher = values.len() - lowest.partition_point(|end| order(end, &high).is_le());
-        (values.len() + 1 + lower - higher) as u64
+        (lower, higher)
     };
-    values.iter().map(rank).collect()
+    values.iter().map(count).collect()
 }
 
 /// The different ranks among readings, and how often each occurs.
@@ -89,6 +109,15 @@ mod tests {
             .collect();
         assert_eq!(doubled_midranks(&values), naive);
         assert_eq!(naive.iter().sum::<u64>(), (values.len() * (values.len() + 1)) as u64);
+    }
+
+    #[test]
+    fn sizes_of_ties() {
+        assert_eq!(tie_sizes(&[Number(5.0), Number(1.0), Number(5.0), Number(9.0)]), Some(vec![1, 2, 1]));
+        assert_eq!(tie_sizes(&[Below(0.5), Number(0.7), Below(0.5), Number(0.5)]), Some(vec![2, 1, 1]));
+        assert_eq!(tie_sizes(&[Below(0.5), Number(0.3), Number(0.4)]), None);
+        assert_eq!(tie_sizes(&[Below(0.5), Below(0.2), Number(0.3)]), None);
+        assert_eq!(tie_sizes(&[Above(2.0), Number(1.0), Above(2.0), Number(2.0)]), Some(vec![1, 1, 2]));
     }
 
     #[test]

@@ -2,12 +2,10 @@
 
 pub mod median;
 pub mod midranks;
-pub mod order;
 pub mod pairs;
 pub mod runs;
 pub mod steps;
 
-pub use order::Order;
 pub use pairs::{Pairing, Pairings};
 pub use runs::Run;
 pub use steps::Steps;

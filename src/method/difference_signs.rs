@@ -27,7 +27,8 @@
 use super::question::PBy;
 use super::screen::{Ties, UNTIED};
 use super::{Card, Claim, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic};
-use crate::comparison::{Order, Steps};
+use crate::comparison::Steps;
+use crate::comparison::midranks::tie_sizes;
 use crate::null_distribution::rises::{self, MOST_READINGS};
 use crate::null_distribution::{Attained, By, Tails};
 use crate::reading::{Series, Value};
@@ -143,7 +144,7 @@ struct Null {
 impl Null {
     fn of(series: &Series, sloped: usize, ties: Ties) -> Self {
         let values: Vec<Value> = series.present().map(|(_, value)| value).collect();
-        let sizes = Order::of_values(&values).map(|order| order.sizes);
+        let sizes = tie_sizes(&values);
         let untied = sizes.as_ref().is_some_and(|sizes| sizes.len() == values.len());
         let (sizes, instead) = match sizes {
             Some(sizes) if untied || ties == Ties::Corrected && values.len() <= MOST_READINGS => (sizes, false),

@@ -153,7 +153,7 @@ pub fn judge(
         let found = if simulated {
             largest.simulate(size, how.draws.0, &mut Draws::seeded(how.seed.0.into()))
         } else {
-            Simulated { chance: largest.upper_bound(size).min(1.0), error: 0.0 }
+            Simulated { chance: largest.upper_bound(size), error: 0.0 }
         };
         Simulated { chance: found.chance.clamp(f64::MIN_POSITIVE, 1.0), ..found }
     };

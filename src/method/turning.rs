@@ -3,7 +3,8 @@
 use super::Refusal;
 use super::question::PBy;
 use super::screen::{Ties, TwoSided, UNTIED, attained};
-use crate::comparison::{Order, Steps};
+use crate::comparison::Steps;
+use crate::comparison::midranks::tie_sizes;
 use crate::null_distribution::turns::{self, Counted};
 use crate::null_distribution::{Attained, By};
 use crate::reading::{Series, Value};
@@ -39,7 +40,7 @@ impl TurnNull {
     /// The null distribution for a series, at least one step of which is not level.
     pub fn of(series: &Series, steps: &Steps, counted: Counted, ties: Ties) -> Self {
         let values: Vec<Value> = series.present().map(|(_, value)| value).collect();
-        let sizes = Order::of_values(&values).map(|order| order.sizes);
+        let sizes = tie_sizes(&values);
         let untied = sizes.as_ref().is_some_and(|sizes| sizes.len() == values.len());
         let law = match sizes {
             Some(sizes) if ties == Ties::Corrected && !untied && turns::steps(&sizes, counted) <= turns::MOST_STEPS => {

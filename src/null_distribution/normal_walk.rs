@@ -52,13 +52,17 @@ pub struct Simulated {
 const FEWEST_FOR_BOUND: usize = 8;
 
 impl LargestContrast {
-    /// The chance that the largest contrast reaches `size`, or more.
+    /// An upper bound for the chance that the largest contrast reaches `size`. The empty sum is among the contrasts, so that a
+    /// size of 0 is always reached.
     pub fn upper_bound(&self, size: f64) -> f64 {
-        self.weights(size).iter().sum()
+        if size > 0.0 { self.weights(size).iter().sum::<f64>().min(1.0) } else { 1.0 }
     }
 
-    /// The same chance by `rounds` draws.
+    /// The chance itself by `rounds` draws.
     pub fn simulate(&self, size: f64, rounds: u32, draws: &mut Draws) -> Simulated {
+        if size <= 0.0 {
+            return Simulated { chance: 1.0, error: 0.0 };
+        }
         let weights = self.weights(size);
         let bound: f64 = weights.iter().sum();
         if bound <= 1.0 && self.readings >= FEWEST_FOR_BOUND {
@@ -276,6 +280,12 @@ mod tests {
         assert!((contrast.upper_bound(size) - expected).abs() < 1e-12);
         let drawn = contrast.simulate(size, 40_000, &mut Draws::seeded(6));
         assert!((drawn.chance - expected).abs() < 4.0 * drawn.error, "{drawn:?} {expected}");
+    }
+
+    #[test]
+    fn the_empty_sum_is_always_reached() {
+        let contrast = largest(Family::PartialSums, 12, true);
+        assert_eq!((contrast.upper_bound(0.0), contrast.simulate(0.0, 1_000, &mut Draws::seeded(7)).chance), (1.0, 1.0));
     }
 
     /// Every pair of partial sums against every other one.

@@ -10,6 +10,7 @@ mod cox_stuart;
 mod difference_signs;
 mod family;
 mod normal_homogeneity;
+mod order_laws;
 mod pettitt;
 mod rank_von_neumann;
 mod reference;
