@@ -31,10 +31,12 @@ const OWNERS: &[(&str, &str)] = &[
     ("clap", "command"),
     ("indicatif", "command"),
     ("statrs", "null_distribution"),
+    ("rand_xoshiro", "null_distribution"),
 ];
 
 /// Files of `method/` that are not tests but what tests share.
-const SHARED_BY_METHODS: [&str; 8] = ["mod", "change", "choices", "declaration", "outcome", "question", "screen", "turning"];
+const SHARED_BY_METHODS: [&str; 9] =
+    ["mod", "change", "choices", "declaration", "normal_change", "outcome", "question", "screen", "turning"];
 
 fn sources() -> BTreeMap<PathBuf, String> {
     let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("src");

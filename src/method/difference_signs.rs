@@ -56,7 +56,7 @@ impl Method for DifferenceSigns {
         claim: Claim::Trend,
         scale: ScaleNeeded::Ordered,
         least_readings: 2,
-        exact: "Up to 2,000 readings, with and without ties.",
+        exact: "Up to 1,000 readings, with and without ties.",
         assumes: &[
             "Apart from a trend, the readings are independent and come from one distribution.",
             "Readings can be ordered; their differences need not mean anything.",

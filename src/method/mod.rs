@@ -6,17 +6,20 @@
 pub mod change;
 pub mod choices;
 pub mod declaration;
+pub mod normal_change;
 pub mod outcome;
 pub mod question;
 pub mod screen;
 pub mod turning;
 
+pub mod buishand_range;
 pub mod cochran_armitage;
 pub mod cox_stuart;
 pub mod difference_signs;
 pub mod jonckheere_terpstra;
 pub mod laplace;
 pub mod military_handbook;
+pub mod normal_homogeneity;
 pub mod page;
 pub mod pettitt;
 pub mod poisson_trend;
@@ -51,6 +54,8 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<rank_von_neumann::RankVonNeumann>(),
     Registered::new::<difference_signs::DifferenceSigns>(),
     Registered::new::<pettitt::Pettitt>(),
+    Registered::new::<buishand_range::BuishandRange>(),
+    Registered::new::<normal_homogeneity::NormalHomogeneity>(),
 ];
 
 /// The test with a given key.

@@ -4,12 +4,16 @@
 //! source, and what an independent computation gives) and `oracle` (values by enumeration, high-precision arithmetic,
 //! SciPy, statsmodels and R's base `stats`; `made_by` says which). `datasets.json` holds open series that they name,
 //! `tables.json` critical values and tail tables, each verified by enumeration.
+
+mod buishand_range;
 mod cochran_armitage;
 mod cox_stuart;
 mod difference_signs;
 mod event_trend;
 mod family;
 mod jonckheere_terpstra;
+mod normal_homogeneity;
+mod order_laws;
 mod page;
 mod pettitt;
 mod poisson_trend;
