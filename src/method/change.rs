@@ -46,7 +46,11 @@ impl<'a> Change<'a> {
         });
         let (before, after) = levels.unwrap_or((None, None));
         let shown = |level: Option<f64>| level.map_or(Datum::Nothing, |level| Datum::of_level(self.series, level));
-        let difference = if self.series.scale.grades().is_some() { None } else { before.zip(after).map(|(a, b)| b - a) };
+        let difference = if self.series.scale.grades().is_some() {
+            None
+        } else {
+            before.zip(after).map(|(a, b)| b - a).filter(|x| x.is_finite())
+        };
         let unit = |fact: Fact| match &self.series.unit {
             Some(unit) if self.series.scale.grades().is_none() => fact.unit(unit.clone()),
             _ => fact,

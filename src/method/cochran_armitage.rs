@@ -302,7 +302,7 @@ fn cautions(shares: &Shares, series: &Series, departure: &Departure, question: &
     if missing + shares.without_trials > 0 {
         cautions.push(format!("{} moments without a reading or without trials were left out.", missing + shares.without_trials));
     }
-    if let Some(p) = departure.p().filter(|p| *p <= question.risk.0) {
+    if let Some(p) = departure.p().filter(|p| question.allows(*p)) {
         cautions.push(format!(
             "The shares depart from a straight line (p = {p:.2e}): they may bend, or scatter more than independent trials would, and then p is too small."
         ));

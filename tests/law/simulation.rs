@@ -1,5 +1,7 @@
 //! How often readings without a trend are claimed to have one: simulated, seeded.
 
+use risefall::method::declaration::Proportion;
+use risefall::method::question::Question;
 use risefall::method::{Registered, Seek};
 use risefall::null_distribution::By;
 
@@ -33,15 +35,16 @@ pub fn simulate(method: &Registered, n: usize, ties: Ties, series: u32, risk: f6
     let name: u64 = method.card.key.bytes().fold(0, |sum, byte| sum * 131 % 1_000_003 + u64::from(byte));
     let mut random = Random::seeded(name * 1_000 + n as u64 * 2 + u64::from(ties == Ties::Heavy));
     let mut size = Size { series, ..Size::default() };
+    let question = Question { risk: Proportion(risk), ..Question::default() };
     for _ in 0..series {
         let Ok(outcome) = Input::random(method, &mut random, n, ties).judge(method, Seek::Either) else {
             size.declined += 1;
             continue;
         };
         size.exact += u32::from(outcome.p.by == By::Exact);
-        size.either += u32::from(outcome.p.value <= risk);
+        size.either += u32::from(question.allows(outcome.p.value));
         if let Some((rising, _)) = directions(&outcome) {
-            *size.rising.get_or_insert(0) += u32::from(rising <= risk);
+            *size.rising.get_or_insert(0) += u32::from(question.allows(rising));
         }
     }
     size
