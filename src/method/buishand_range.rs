@@ -137,7 +137,7 @@ impl Method for BuishandRange {
         let deviation = walk.length / parameters.deviation.divisor(n).sqrt();
         let mut facts = vec![
             Fact::new("mean", "Mean", walk.mean),
-            Fact::new("deviation", "Standard deviation", deviation),
+            Fact::new("deviation", "Standard deviation", Some(deviation).filter(|deviation| deviation.is_finite())),
             Fact::new("q", "Q over the root of n: largest distance of the partial sums from 0", q),
             Fact::new("r", "R over the root of n: range of the partial sums", r),
             Fact::new(

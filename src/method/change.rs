@@ -82,7 +82,7 @@ impl<'a> Change<'a> {
                 (index + 1).into(),
                 self.series.moments.label(index).into(),
                 Datum::of_reading(self.series, index),
-                statistic.get(place).copied().into(),
+                statistic.get(place).copied().filter(|size| size.is_finite()).into(),
                 if self.splits.contains(&(place + 1)) { "fits best" } else { "" }.into(),
             ]
         };

@@ -185,5 +185,5 @@ pub fn judge(
 /// The mean of readings that are numbers.
 pub fn mean(values: &[Value]) -> Option<f64> {
     let numbers: Vec<f64> = values.iter().filter_map(|value| value.number()).collect();
-    (!numbers.is_empty()).then(|| numbers.iter().sum::<f64>() / numbers.len() as f64)
+    (!numbers.is_empty()).then(|| numbers.iter().sum::<f64>() / numbers.len() as f64).filter(|mean| mean.is_finite())
 }

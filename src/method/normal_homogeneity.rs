@@ -131,7 +131,7 @@ impl Method for NormalHomogeneity {
         };
         let mut facts = vec![
             Fact::new("mean", "Mean", walk.mean),
-            Fact::new("deviation", "Standard deviation", walk.length / divisor.sqrt()),
+            Fact::new("deviation", "Standard deviation", Some(walk.length / divisor.sqrt()).filter(|size| size.is_finite())),
             Fact::new("t0", "T0: largest T", divisor * size * size),
         ];
         facts.extend(change.facts("mean", mean));

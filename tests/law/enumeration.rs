@@ -4,7 +4,7 @@ use risefall::method::{Claim, METHODS, Outcome, Registered, ScaleNeeded, Seek};
 use risefall::null_distribution::By;
 use risefall::reading::Value;
 
-use crate::inputs::{Input, Ties, directions, fact};
+use crate::inputs::{Input, Ties, both_tails, fact};
 use crate::random::Random;
 
 /// What is equally probable if there is no trend.
@@ -21,11 +21,12 @@ enum Arrangements {
     MomentsOfEvents,
 }
 
-/// How strongly an outcome speaks for a rise, and how strongly for a fall.
+/// How strongly an outcome speaks for a rise or a smooth order, and how strongly for a fall or an alternating order.
 type Evidence = fn(&Outcome) -> (f64, f64);
 
 const BY_STATISTIC: Evidence = |outcome| (outcome.statistic.value, -outcome.statistic.value);
 const BY_STATISTIC_TURNED: Evidence = |outcome| (-outcome.statistic.value, outcome.statistic.value);
+const BY_K: Evidence = |outcome| (fact(outcome, "k_rising").unwrap(), fact(outcome, "k_falling").unwrap());
 const BY_RISES_AND_FALLS: Evidence = |outcome| (fact(outcome, "rises").unwrap(), fact(outcome, "falls").unwrap());
 
 /// Which arrangements a test counts, and what makes one of them more extreme than another.
@@ -38,8 +39,10 @@ fn arrangements(method: &Registered) -> Option<(Arrangements, Evidence)> {
         ("cochran-armitage", _) => (Arrangements::EventsAmongTrials, BY_STATISTIC),
         ("poisson-trend", _) => (Arrangements::MomentsOfEvents, BY_STATISTIC),
         ("reverse-arrangements", _) => (Arrangements::Orders, BY_STATISTIC_TURNED),
+        ("pettitt", _) => (Arrangements::Orders, BY_K),
         ("difference-signs", _) => (Arrangements::Orders, BY_RISES_AND_FALLS),
         (key, _) if EXEMPT.iter().any(|(name, _)| *name == key) => return None,
+        (_, ScaleNeeded::Ordered) if method.card.claim == Claim::Pattern => (Arrangements::Orders, BY_STATISTIC_TURNED),
         (_, ScaleNeeded::Ordered) if method.card.claim == Claim::Trend => (Arrangements::Orders, BY_STATISTIC),
         _ => return None,
     })
@@ -135,7 +138,7 @@ fn check(method: &Registered, input: &Input, outcome: &Outcome, arrangements: &A
             }
         }
     }
-    let (rising, falling) = directions(outcome).unwrap();
+    let (rising, falling) = both_tails(outcome).unwrap();
     for (got, count, tail) in [(rising, as_rising, "rising"), (falling, as_falling, "falling")] {
         let expected: f64 = count / all;
         assert!((got - expected).abs() <= 1e-11 * expected, "{}, {tail}: {got} and {expected}, {input:?}", method.card.key);

@@ -8,11 +8,14 @@ use crate::simulation::simulate;
 /// An exact p claims a trend where there is none at most as often as the risk says; four standard errors are allowed for.
 #[test]
 fn exact_tests_keep_the_risk() {
-    let (series, risk) = (800, 0.05);
-    let most = 100.0 * (risk + 4.0 * (risk * (1.0 - risk) / f64::from(series)).sqrt());
+    let risk = 0.05;
     for method in METHODS {
-        for n in [8, 20] {
+        for (n, series) in [(8, 800), (20, 150)] {
+            let most = 100.0 * (risk + 4.0 * (risk * (1.0 - risk) / f64::from(series)).sqrt());
             for ties in [Ties::None, Ties::Heavy] {
+                if simulate(method, n, ties, 8, risk).exact == 0 {
+                    continue;
+                }
                 let size = simulate(method, n, ties, series, risk);
                 if size.exact + size.declined == series && !ROUNDED.contains(&(method.card.key, ties)) {
                     let what = format!("{}, n = {n}, {ties:?}: {size:?}", method.card.key);
