@@ -3,7 +3,7 @@
 use risefall::method::{Claim, Direction, ScaleNeeded, Seek};
 
 use crate::for_every_test;
-use crate::inputs::{directions, same};
+use crate::inputs::{both_tails, directions, same};
 
 /// Tests for which reversing time is not the mirror image, and why.
 const NOT_MIRRORED: [(&str, &str); 1] = [("military-handbook", "a power of time is not a power of the time that is left")];
@@ -18,7 +18,13 @@ fn reversing_time_swaps_rising_and_falling() {
         }
         let reversed = input.reversed(method).judge(method, Seek::Either).unwrap();
         same(reversed.p.value, outcome.p.value, &format!("{key}, two-sided, {input:?}"));
-        if let (Claim::Trend, Some((rising, falling))) = (method.card.claim, directions(outcome)) {
+        if let (Claim::Pattern, Some(tails), Some(reversed_tails)) =
+            (method.card.claim, both_tails(outcome), both_tails(&reversed))
+        {
+            same(reversed_tails.0, tails.0, &format!("{key}: smooth either way, {input:?}"));
+            same(reversed_tails.1, tails.1, &format!("{key}: alternating either way, {input:?}"));
+        }
+        if let Some((rising, falling)) = directions(outcome) {
             let (reversed_rising, reversed_falling) = directions(&reversed).unwrap();
             same(reversed_rising, falling, &format!("{key}: a fall is a rise backwards, {input:?}"));
             same(reversed_falling, rising, &format!("{key}: a rise is a fall backwards, {input:?}"));

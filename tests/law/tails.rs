@@ -4,7 +4,7 @@ use risefall::method::{Claim, METHODS, Outcome, Registered, ScaleNeeded, Seek};
 use risefall::null_distribution::By;
 
 use crate::for_every_test;
-use crate::inputs::{Input, Ties, directions, fact, forms_of_p, same};
+use crate::inputs::{Input, Ties, both_tails, directions, fact, forms_of_p, same};
 use crate::random::Random;
 
 /// Tests whose two tails belong to two statistics, and why.
@@ -112,9 +112,7 @@ fn tails_share_the_point_and_nothing_else() {
             random.shuffle(&mut order);
             let Ok(outcome) = input.rearranged(&order).judge(method, Seek::Either) else { continue };
             if outcome.p.by == By::Exact && method.card.claim != Claim::Change {
-                tails.extend(
-                    directions(&outcome).or_else(|| Some((fact(&outcome, "p_smooth")?, fact(&outcome, "p_alternating")?))),
-                );
+                tails.extend(both_tails(&outcome));
             }
         }
         tails.sort_by(|a, b| a.0.total_cmp(&b.0));

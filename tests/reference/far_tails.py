@@ -165,7 +165,7 @@ for moments, events in [(8, [0, 0, 0, 0, 1, 2, 7, 30]), (12, [0] * 9 + [1, 3, 60
 for n in [8, 9]:
     case("rank-von-neumann", {"readings": sorted_but(n, 0)}, "p_smooth", Fraction(2, factorial(n)), "two orders of n!")
 
-for half in [8, 12]:
+for half in [6, 8]:
     readings = [1.5 + k for k in range(half)] + [100.0 + k for k in range(half)]
     case("pettitt", {"readings": readings}, "p_rising", Fraction(1, comb(2 * half, half)), "binomial coefficient")
 
