@@ -1,6 +1,6 @@
 //! Prints, as a Markdown table, how often each test claims a trend in series that have none.
 //!
-//! `cargo run --release --example simulated_size -- [SERIES] [TEST]...`
+//! `cargo run --release --example simulated_size -- [SERIES] [TEST]...`; the table is kept in `src/method/size.md`.
 
 #[allow(dead_code)]
 #[path = "../tests/law/inputs.rs"]

@@ -24,3 +24,4 @@ mod reference;
 mod runs_about_median;
 mod spearman;
 mod turning;
+mod wired;
