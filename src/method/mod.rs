@@ -2,6 +2,8 @@
 //!
 //! To add a test: write its file, add its `mod` line and its line in [`METHODS`], and a folder of published examples
 //! under `tests/published`. Route, parser, help, OpenAPI, plan, sheet and page follow from the declaration.
+//!
+#![doc = include_str!("size.md")]
 
 pub mod change;
 pub mod choices;

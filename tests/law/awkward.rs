@@ -21,7 +21,7 @@ fn awkward() -> Vec<Vec<Value>> {
         vec![number(2.0), number(1.0)],
         vec![number(1.0); 2],
         vec![number(0.0); 9],
-        vec![number(7.0); 30],
+        vec![number(7.0); 16],
         vec![BLANK; 8],
         vec![BLANK, number(3.0), BLANK],
         vec![BLANK, number(3.0), BLANK, number(4.0), BLANK, number(2.0), number(9.0), BLANK],
@@ -37,7 +37,7 @@ fn awkward() -> Vec<Vec<Value>> {
         (1..=9).map(|x| number(f64::from(x))).collect(),
         (1..=9).rev().map(|x| number(f64::from(x))).collect(),
         (0..10).map(|x| number(f64::from(x % 2))).collect(),
-        (0..100).map(|x| number(f64::from(x))).collect(),
+        (0..60).map(|x| number(f64::from(x))).collect(),
     ];
     let mut random = Random::seeded(99);
     for _ in 0..24 {

@@ -10,7 +10,7 @@ use crate::simulation::simulate;
 fn exact_tests_keep_the_risk() {
     let risk = 0.05;
     for method in METHODS {
-        for (n, series) in [(8, 800), (20, 150)] {
+        for (n, series) in [(8, 500), (20, 100)] {
             let most = 100.0 * (risk + 4.0 * (risk * (1.0 - risk) / f64::from(series)).sqrt());
             for ties in [Ties::None, Ties::Heavy] {
                 if simulate(method, n, ties, 8, risk).exact == 0 {

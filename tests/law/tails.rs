@@ -24,7 +24,7 @@ fn has_one_statistic(method: &Registered) -> bool {
 /// and 1; and what is sought picks the p-value that the facts name.
 #[test]
 fn tails_belong_together() {
-    for_every_test(&[4, 9, 20, 32], 10, |method, input, outcome| {
+    for_every_test(&[4, 9, 20, 32], 4, |method, input, outcome| {
         let what = format!("{}, {input:?}", method.card.key);
         assert!((0.0..=1.0).contains(&outcome.p.value), "{what}: p = {}", outcome.p.value);
         let Some((rising, falling)) = directions(outcome) else { return };
@@ -80,7 +80,7 @@ fn the_clearest_rise_reaches_the_smallest_p() {
 /// Where both an exact p and an approximation exist, they do not lie far apart for forty readings without ties.
 #[test]
 fn approximations_are_near_the_exact_p() {
-    for_every_test(&[40], 6, |method, input, outcome| {
+    for_every_test(&[40], 4, |method, input, outcome| {
         if directions(outcome).is_none() || outcome.p.by != By::Exact {
             return;
         }
