@@ -31,10 +31,26 @@ const OWNERS: &[(&str, &str)] = &[
     ("clap", "command"),
     ("indicatif", "command"),
     ("statrs", "null_distribution"),
+    ("rand_xoshiro", "null_distribution"),
 ];
 
 /// Files of `method/` that are not tests but what tests share.
-const SHARED_BY_METHODS: [&str; 8] = ["mod", "change", "choices", "declaration", "outcome", "question", "screen", "turning"];
+const SHARED_BY_METHODS: [&str; 14] = [
+    "mod",
+    "blocked_kendall",
+    "change",
+    "choices",
+    "declaration",
+    "dependence",
+    "kendall",
+    "normal_change",
+    "outcome",
+    "question",
+    "scores_covariance",
+    "screen",
+    "slope",
+    "turning",
+];
 
 fn sources() -> BTreeMap<PathBuf, String> {
     let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("src");

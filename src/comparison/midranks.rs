@@ -14,17 +14,22 @@ pub type Classes = Vec<(u64, usize)>;
 /// Wilcoxon test for comparing arbitrarily singly-censored samples, *Biometrika* 52, 203-223. The ranks always add up to
 /// n(n + 1)/2. Time grows with n log n.
 pub fn doubled_midranks(values: &[Value]) -> Vec<u64> {
+    lower_and_higher(values).into_iter().map(|(lower, higher)| (values.len() + 1 + lower - higher) as u64).collect()
+}
+
+/// For each value, how many are certainly lower and how many are certainly higher.
+pub(super) fn lower_and_higher(values: &[Value]) -> Vec<(usize, usize)> {
     let mut lowest: Vec<(f64, u8)> = values.iter().map(|&value| ends(value).0).collect();
     let mut highest: Vec<(f64, u8)> = values.iter().map(|&value| ends(value).1).collect();
     lowest.sort_by(order);
     highest.sort_by(order);
-    let rank = |&value: &Value| {
+    let count = |&value: &Value| {
         let (low, high) = ends(value);
         let lower = highest.partition_point(|end| order(end, &low).is_lt());
         let higher = values.len() - lowest.partition_point(|end| order(end, &high).is_le());
-        (values.len() + 1 + lower - higher) as u64
+        (lower, higher)
     };
-    values.iter().map(rank).collect()
+    values.iter().map(count).collect()
 }
 
 /// The different ranks among readings, and how often each occurs.

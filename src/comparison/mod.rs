@@ -1,4 +1,5 @@
 //! What can be said of readings before any test: pairs, ranks, ties, runs, seasons.
+
 pub mod counts;
 pub mod events;
 pub mod groups;

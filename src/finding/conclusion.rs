@@ -67,7 +67,7 @@ pub struct Conclusion {
 
 /// The word for an outcome, judged by `p`, which may have been adjusted for other indicators.
 pub fn word(outcome: &Outcome, claim: Claim, question: &Question, p: f64) -> Word {
-    if p <= question.risk.0 {
+    if question.allows(p) {
         return match (claim, outcome.direction) {
             (Claim::Trend, Direction::Rising) => Word::Rising,
             (Claim::Trend, Direction::Falling) => Word::Falling,
@@ -77,7 +77,7 @@ pub fn word(outcome: &Outcome, claim: Claim, question: &Question, p: f64) -> Wor
         };
     }
     match outcome.smallest_p {
-        Some(smallest) if smallest > question.risk.0 => Word::TooFew,
+        Some(smallest) if !question.allows(smallest) => Word::TooFew,
         _ => Word::NotShown,
     }
 }

@@ -6,7 +6,6 @@
 //! the picking would be honest; none is given.
 
 use super::{Column, Datum, Direction, Fact, Seek, Table};
-use crate::comparison::median;
 use crate::reading::{Series, Value};
 
 /// The fewest readings on each side of a change for which no caution is given.
@@ -46,11 +45,12 @@ impl<'a> Change<'a> {
             (level(&values[..split]), level(&values[split..]))
         });
         let (before, after) = levels.unwrap_or((None, None));
-        let shown = |level: Option<f64>| match (level, self.series.scale.grades()) {
-            (Some(level), Some(_)) => Datum::Text(median::shown(level, &self.series.scale)),
-            (level, _) => level.into(),
+        let shown = |level: Option<f64>| level.map_or(Datum::Nothing, |level| Datum::of_level(self.series, level));
+        let difference = if self.series.scale.grades().is_some() {
+            None
+        } else {
+            before.zip(after).map(|(a, b)| b - a).filter(|x| x.is_finite())
         };
-        let difference = if self.series.scale.grades().is_some() { None } else { before.zip(after).map(|(a, b)| b - a) };
         let unit = |fact: Fact| match &self.series.unit {
             Some(unit) if self.series.scale.grades().is_none() => fact.unit(unit.clone()),
             _ => fact,
@@ -82,7 +82,7 @@ impl<'a> Change<'a> {
                 (index + 1).into(),
                 self.series.moments.label(index).into(),
                 Datum::of_reading(self.series, index),
-                statistic.get(place).copied().into(),
+                statistic.get(place).copied().filter(|size| size.is_finite()).into(),
                 if self.splits.contains(&(place + 1)) { "fits best" } else { "" }.into(),
             ]
         };

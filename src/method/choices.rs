@@ -51,11 +51,11 @@ crate::choices! {
 }
 
 crate::choices! {
-    /// Whether ties are allowed for in the null distribution.
+    /// Whether equal readings are allowed for in the null distribution.
     pub enum TieCorrection {
         /// The null distribution is that of readings tied in the same way: conditional on the ties, or with a smaller variance.
         Corrected = "corrected",
-        /// The null distribution is that of readings without ties, as in older tables. It is on the safe side.
+        /// The null distribution is that of as many readings without ties, as in published tables.
         Ignored = "ignored",
     }
 }

@@ -78,7 +78,7 @@ impl Method for CochranArmitage {
         claim: Claim::Trend,
         scale: ScaleNeeded::Counts,
         least_readings: 2,
-        exact: "Up to 500 million products of chances, about 1,000 events in 12 moments; more if events or non-events are few.",
+        exact: "Up to 500 million products of chances: about 300 events, or 300 trials without one, at 12 moments; 140 at 52 moments.",
         assumes: &[
             "Trials are independent of each other: one trial's event makes no other more or less probable.",
             "The trials of each moment are all counted, with or without an event.",
@@ -302,7 +302,7 @@ fn cautions(shares: &Shares, series: &Series, departure: &Departure, question: &
     if missing + shares.without_trials > 0 {
         cautions.push(format!("{} moments without a reading or without trials were left out.", missing + shares.without_trials));
     }
-    if let Some(p) = departure.p().filter(|p| *p <= question.risk.0) {
+    if let Some(p) = departure.p().filter(|p| question.allows(*p)) {
         cautions.push(format!(
             "The shares depart from a straight line (p = {p:.2e}): they may bend, or scatter more than independent trials would, and then p is too small."
         ));

@@ -24,8 +24,9 @@
 //! Statistical Association* 38, 153-164. P. A. MacMahon (1915), *Combinatory Analysis*, volume 1, section IV, chapter IV (equal
 //! readings). M. G. Kendall (1973), *Time-Series*, Griffin, chapter 2.
 
+use super::choices::TieCorrection;
 use super::question::PBy;
-use super::screen::{Ties, UNTIED};
+use super::screen::UNTIED;
 use super::{Card, Claim, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic};
 use crate::comparison::{Order, Steps};
 use crate::null_distribution::rises::{self, MOST_READINGS};
@@ -36,7 +37,7 @@ crate::parameters! {
     /// What the difference-sign test takes beyond readings, seek and risk.
     pub struct Parameters {
         /// Whether equal readings are allowed for in the null distribution, or level steps are left out.
-        ties: Ties = Ties::Corrected,
+        ties: TieCorrection = TieCorrection::Corrected,
         /// Which form of the p-value is wanted.
         p_by: PBy = PBy::Best,
     }
@@ -56,7 +57,7 @@ impl Method for DifferenceSigns {
         claim: Claim::Trend,
         scale: ScaleNeeded::Ordered,
         least_readings: 2,
-        exact: "Up to 2,000 readings, with and without ties.",
+        exact: "Up to 1,000 readings, with and without ties.",
         assumes: &[
             "Apart from a trend, the readings are independent and come from one distribution.",
             "Readings can be ordered; their differences need not mean anything.",
@@ -141,12 +142,12 @@ struct Null {
 }
 
 impl Null {
-    fn of(series: &Series, sloped: usize, ties: Ties) -> Self {
+    fn of(series: &Series, sloped: usize, ties: TieCorrection) -> Self {
         let values: Vec<Value> = series.present().map(|(_, value)| value).collect();
         let sizes = Order::of_values(&values).map(|order| order.sizes);
         let untied = sizes.as_ref().is_some_and(|sizes| sizes.len() == values.len());
         let (sizes, instead) = match sizes {
-            Some(sizes) if untied || ties == Ties::Corrected && values.len() <= MOST_READINGS => (sizes, false),
+            Some(sizes) if untied || ties == TieCorrection::Corrected && values.len() <= MOST_READINGS => (sizes, false),
             _ => (vec![1; sloped + 1], true),
         };
         let (mean, variance) = rises::moments(&sizes);

@@ -61,7 +61,7 @@ impl Method for JonckheereTerpstra {
         claim: Claim::Trend,
         scale: ScaleNeeded::Ordered,
         least_readings: 2,
-        exact: "Without ties among the readings: about 400 readings at two moments, 300 at ten. With ties: up to 500 million products of chances, such as 40 readings at each of two moments, 15 at each of three, or 50 readings in three grades.",
+        exact: "Up to 500 million products of chances. Without ties among the readings: 175 readings at each of two moments, 26 at each of ten. With ties in pairs: 90 at each of two moments, 28 at each of three. In three grades: 60 readings or more.",
         assumes: &[
             "The readings are independent of each other, within a moment and between moments.",
             "Readings can be ordered; their differences need not mean anything.",

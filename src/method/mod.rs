@@ -2,12 +2,15 @@
 //!
 //! To add a test: write its file, add its `mod` line and its line in [`METHODS`], and a folder of published examples
 //! under `tests/published`. Route, parser, help, OpenAPI, plan, sheet and page follow from the declaration.
+//!
+#![doc = include_str!("size.md")]
 
 pub mod blocked_kendall;
 pub mod change;
 pub mod choices;
 pub mod declaration;
 pub mod dependence;
+pub mod normal_change;
 pub mod outcome;
 pub mod question;
 pub mod scores_covariance;
@@ -15,6 +18,7 @@ pub mod screen;
 pub mod slope;
 pub mod turning;
 
+pub mod buishand_range;
 pub mod cochran_armitage;
 pub mod cox_stuart;
 pub mod difference_signs;
@@ -23,6 +27,7 @@ pub mod kendall;
 pub mod laplace;
 pub mod mann_kendall;
 pub mod military_handbook;
+pub mod normal_homogeneity;
 pub mod page;
 pub mod partial_kendall;
 pub mod pettitt;
@@ -66,6 +71,8 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<rank_von_neumann::RankVonNeumann>(),
     Registered::new::<difference_signs::DifferenceSigns>(),
     Registered::new::<pettitt::Pettitt>(),
+    Registered::new::<buishand_range::BuishandRange>(),
+    Registered::new::<normal_homogeneity::NormalHomogeneity>(),
 ];
 
 /// The test with a given key.

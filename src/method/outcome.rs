@@ -1,8 +1,8 @@
 //! What a test found, before any words are made of it.
 
-use crate::comparison::Pairings;
+use crate::comparison::{Pairings, median};
 use crate::null_distribution::Probability;
-use crate::reading::Series;
+use crate::reading::{Scale, Series};
 
 /// The direction in which a statistic points.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -99,6 +99,14 @@ pub enum Datum {
 }
 
 impl Datum {
+    /// A level of a series: a number, or for grades the word or the two words that it lies between.
+    pub fn of_level(series: &Series, level: f64) -> Self {
+        match series.scale {
+            Scale::Numeric => Datum::Number(level),
+            Scale::Graded(_) => Datum::Text(median::shown(level, &series.scale)),
+        }
+    }
+
     /// A reading's value: a number, or the words for a grade or a limit.
     pub fn of_reading(series: &Series, index: usize) -> Self {
         match series.values.get(index).and_then(|value| value.number()) {

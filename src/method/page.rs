@@ -57,7 +57,7 @@ impl Method for Page {
         claim: Claim::Trend,
         scale: ScaleNeeded::Ordered,
         least_readings: 2,
-        exact: "Up to 500 million products of chances: about 15 moments in a few blocks, 12 moments in 60 blocks without ties, 6 moments in 800.",
+        exact: "Up to 500 million products of chances: 15 moments in a few blocks, 12 moments in 110, 6 moments in 850, 4 moments in 3,000.",
         assumes: &[
             "Blocks are independent of each other.",
             "Within a block the readings are exchangeable apart from a trend; how high they are may differ between blocks.",

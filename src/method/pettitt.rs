@@ -71,7 +71,7 @@ impl Method for Pettitt {
         claim: Claim::Change,
         scale: ScaleNeeded::Ordered,
         least_readings: 2,
-        exact: "Up to 1,048,576 sets of taken ranks: 20 readings without ties, 300 in three grades, or 75 in five grades of equal size; fewer with more distinct values.",
+        exact: "Up to 262,144 sets of taken ranks: 18 readings without ties, 180 in three grades, or 50 in five; fewer with more distinct values.",
         assumes: &[
             "Apart from one change of level, the readings are independent and come from one distribution.",
             "Readings can be ordered; their differences need not mean anything.",
@@ -159,7 +159,7 @@ fn attained(ranks: &[u64], classes: &Classes, reached: Barriers, p_by: PBy) -> R
     let exact = match p_by {
         PBy::Approximation => false,
         PBy::Exact if states > MOST_STATES => {
-            let what = "sets of taken ranks (20 readings without ties)";
+            let what = "sets of taken ranks (18 readings without ties)";
             return Err(Refusal::BeyondExact { what, have: states, most: MOST_STATES });
         }
         PBy::Best | PBy::Exact => states <= MOST_STATES,

@@ -84,6 +84,12 @@ impl Question {
         ]
     }
 
+    /// Whether a p-value reaches the accepted risk. An exact p that equals the risk may miss it in its last digits, for it was
+    /// added up from many chances; so a relative difference of 1e-14 is none.
+    pub fn allows(&self, p: f64) -> bool {
+        p <= self.risk.0 * (1.0 + 1e-14)
+    }
+
     /// Whether a direction is among those sought.
     pub fn seeks(&self, direction: Direction) -> bool {
         match self.seek {

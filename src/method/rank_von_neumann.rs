@@ -32,7 +32,8 @@
 //! for randomness in the non-parametric case based on serial correlation, *Annals of Mathematical Statistics* 14, 378-388
 //! (moments over all arrangements, from which the variance with ties follows).
 
-use super::screen::{Ties, Toward, TwoSided, UNTIED, attained, judge};
+use super::choices::TieCorrection;
+use super::screen::{Toward, TwoSided, UNTIED, attained, judge};
 use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
     Table,
@@ -62,7 +63,7 @@ crate::parameters! {
         /// Which order counts as evidence with seek=either: smooth (a small ratio), alternating (a large one), or either.
         toward: Toward = Toward::Either,
         /// Whether equal readings are allowed for in the null distribution.
-        ties: Ties = Ties::Corrected,
+        ties: TieCorrection = TieCorrection::Corrected,
         /// What counts as at least as extreme when small and large ratios both count.
         two_sided: TwoSided = TwoSided::Doubled,
         /// Which form of the p-value is wanted.
@@ -186,18 +187,18 @@ impl Ranked {
     }
 
     /// The variance of the ratio over all arrangements of the ranks, or over those of as many ranks without ties.
-    fn variance(&self, ties: Ties) -> f64 {
+    fn variance(&self, ties: TieCorrection) -> f64 {
         let n = self.ranks.len() as f64;
         match ties {
-            Ties::Corrected => {
+            TieCorrection::Corrected => {
                 (4.0 * n - 6.0) / (n * (n - 1.0)) - 2.0 * self.fourth_powers / ((n - 1.0) * self.spread * self.spread)
             }
-            Ties::Ignored => 4.0 * (n - 2.0) * (5.0 * n * n - 2.0 * n - 9.0) / (5.0 * n * (n + 1.0) * (n - 1.0).powi(2)),
+            TieCorrection::Ignored => 4.0 * (n - 2.0) * (5.0 * n * n - 2.0 * n - 9.0) / (5.0 * n * (n + 1.0) * (n - 1.0).powi(2)),
         }
     }
 
     fn attained(&self, variance: f64, parameters: &Parameters) -> Result<Attained, Refusal> {
-        let ignored = parameters.ties == Ties::Ignored && self.is_tied();
+        let ignored = parameters.ties == TieCorrection::Ignored && self.is_tied();
         let untied: Classes = (1..=self.ranks.len() as u64).map(|rank| (2 * rank, 1)).collect();
         let classes = if ignored { &untied } else { &self.classes };
         let effort = rank_steps::effort(classes);

@@ -72,7 +72,7 @@ impl Method for ReverseArrangements {
         claim: Claim::Trend,
         scale: ScaleNeeded::EventTimes,
         least_readings: 2,
-        exact: "Up to 1,000 gaps without ties; fewer with large groups of ties, about 400 in two halves.",
+        exact: "Up to 1,000 gaps without ties; fewer with large groups of ties, 350 in two halves.",
         assumes: &[
             "All events of one item were recorded from the start of observation.",
             "The gaps are independent of each other; their distribution may be any.",

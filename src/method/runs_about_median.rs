@@ -36,7 +36,7 @@ use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
     Table,
 };
-use crate::comparison::median::{median, shown};
+use crate::comparison::median::median;
 use crate::comparison::runs::{Run, runs};
 use crate::null_distribution::runs_of_two;
 use crate::null_distribution::{Attained, By};
@@ -136,7 +136,7 @@ impl Method for RunsAboutMedian {
         };
         let (p, smallest, p_facts) = judge(question, parameters.toward, &attained)?;
         let mut facts = vec![
-            Fact::new("median", "Median", shown(sides.median, &series.scale)),
+            Fact::new("median", "Median", Datum::of_level(series, sides.median)),
             Fact::new("above", "Readings above the median", above),
             Fact::new("below", "Readings below the median", below),
             Fact::new("on_median", "Readings equal to the median", sides.on_median),

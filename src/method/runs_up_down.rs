@@ -31,8 +31,9 @@
 //! Mathematical Statistics* 15, 58-69. D. André (1884), Étude sur les maxima, minima et séquences des permutations, *Annales
 //! scientifiques de l'École Normale Supérieure* (3) 1, 121-134 (the exact distribution).
 
+use super::choices::TieCorrection;
 use super::question::PBy;
-use super::screen::{Ties, Toward, TwoSided, judge};
+use super::screen::{Toward, TwoSided, judge};
 use super::turning::{Equal, TurnNull};
 use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
@@ -50,7 +51,7 @@ crate::parameters! {
         /// What becomes of equal neighbours: taken as one reading, or counted strictly, so that a level step ends a run.
         equal: Equal = Equal::Collapse,
         /// Whether equal readings are allowed for in the null distribution.
-        ties: Ties = Ties::Corrected,
+        ties: TieCorrection = TieCorrection::Corrected,
         /// What counts as at least as extreme when few and many runs both count.
         two_sided: TwoSided = TwoSided::Doubled,
         /// Which form of the p-value is wanted.

@@ -32,16 +32,6 @@ crate::choices! {
     }
 }
 
-crate::choices! {
-    /// Whether equal readings are allowed for in the null distribution.
-    pub enum Ties {
-        /// p refers to all arrangements of these readings, the equal ones among them.
-        Corrected = "corrected",
-        /// p refers to as many readings without ties, as in published tables.
-        Ignored = "ignored",
-    }
-}
-
 /// The name of an exact null distribution of untied readings that is used for tied ones.
 pub const UNTIED: By = By::Approximation("exact distribution of untied readings");
 

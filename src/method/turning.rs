@@ -1,8 +1,9 @@
 //! What the two tests of turning points and of runs up and down have in common: choices and the null distribution.
 
 use super::Refusal;
+use super::choices::TieCorrection;
 use super::question::PBy;
-use super::screen::{Ties, TwoSided, UNTIED, attained};
+use super::screen::{TwoSided, UNTIED, attained};
 use crate::comparison::{Order, Steps};
 use crate::null_distribution::turns::{self, Counted};
 use crate::null_distribution::{Attained, By};
@@ -37,12 +38,12 @@ enum Law {
 
 impl TurnNull {
     /// The null distribution for a series, at least one step of which is not level.
-    pub fn of(series: &Series, steps: &Steps, counted: Counted, ties: Ties) -> Self {
+    pub fn of(series: &Series, steps: &Steps, counted: Counted, ties: TieCorrection) -> Self {
         let values: Vec<Value> = series.present().map(|(_, value)| value).collect();
         let sizes = Order::of_values(&values).map(|order| order.sizes);
         let untied = sizes.as_ref().is_some_and(|sizes| sizes.len() == values.len());
         let law = match sizes {
-            Some(sizes) if ties == Ties::Corrected && !untied && turns::steps(&sizes, counted) <= turns::MOST_STEPS => {
+            Some(sizes) if ties == TieCorrection::Corrected && !untied && turns::steps(&sizes, counted) <= turns::MOST_STEPS => {
                 Law::Tied { sizes, readings: values.len() }
             }
             _ => {

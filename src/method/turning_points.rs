@@ -27,8 +27,9 @@
 //! variance). M. G. Kendall (1973), *Time-Series*, Griffin, chapter 2. W. A. Wallis and G. H. Moore (1941), A significance test
 //! for time series analysis, *Journal of the American Statistical Association* 36, 401-409.
 
+use super::choices::TieCorrection;
 use super::question::PBy;
-use super::screen::{Ties, Toward, TwoSided, judge};
+use super::screen::{Toward, TwoSided, judge};
 use super::turning::{Equal, TurnNull};
 use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
@@ -47,7 +48,7 @@ crate::parameters! {
         /// What becomes of equal neighbours: taken as one reading, or counted strictly, so that a level top is no peak.
         equal: Equal = Equal::Collapse,
         /// Whether equal readings are allowed for in the null distribution.
-        ties: Ties = Ties::Corrected,
+        ties: TieCorrection = TieCorrection::Corrected,
         /// What counts as at least as extreme when few and many turning points both count.
         two_sided: TwoSided = TwoSided::Doubled,
         /// Which form of the p-value is wanted.

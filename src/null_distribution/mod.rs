@@ -13,6 +13,7 @@ pub mod draws;
 pub mod hypergeometric;
 pub mod lattice;
 pub mod normal;
+pub mod normal_walk;
 pub mod ordered_table;
 mod pieces;
 pub mod probability;

@@ -19,7 +19,7 @@ use super::Lattice;
 use super::q_multinomial;
 use super::strip::Strip;
 
-/// The most products that the distribution may take; about a third of a second on one core.
+/// The most products that the distribution may take; less than a second on one core.
 pub const MOST_PRODUCTS: f64 = 5e8;
 
 /// The most readings, so that all binomial coefficients are ordinary numbers.

@@ -9,9 +9,9 @@
 //! Mathematicae* 14, 327-333; H. B. Mann and D. R. Whitney (1947), *Annals of Mathematical Statistics* 18, 50-60.
 
 use super::Lattice;
-use super::lattice::{add_scaled, convolve};
+use super::lattice::convolve;
 
-/// The most additions that the distribution may take; about a third of a second on one core.
+/// The most additions that the distribution may take; less than a second on one core.
 pub const MOST_ADDITIONS: f64 = 5e8;
 
 /// How many additions [`rises_less_falls`] takes, about.
@@ -22,7 +22,7 @@ pub fn effort(sizes: &[usize]) -> f64 {
     for size in sorted {
         let size = size as f64;
         effort +=
-            if size == 1.0 { 3.0 * (pairs + before) } else { (before * size).powi(2) / 4.0 + before * size * (pairs + 1.0) };
+            if size == 1.0 { 3.0 * (pairs + before) } else { (before * size).powi(2) / 2.0 + before * size * (pairs + 1.0) };
         pairs += before * size;
         before += size;
     }
@@ -47,40 +47,53 @@ pub fn rises_less_falls(sizes: &[usize]) -> Lattice {
     Lattice::new(-pairs, 2, rises)
 }
 
-/// The chances of each sum of a count and an independent uniform one from 0 to `width` - 1.
+/// The chances of each sum of a symmetric count and an independent uniform one from 0 to `width` - 1.
 ///
-/// Each window is the end of one block of `width` chances and the start of the next, so nothing is ever subtracted.
+/// Each window is the end of one block of `width` chances and the start of the next, so nothing is ever subtracted. Half
+/// of the sums suffice, the others mirror them. What is too small to be kept to full precision is dropped, since
+/// arithmetic with such numbers is very slow.
 fn plus_uniform(chances: &[f64], width: usize) -> Vec<f64> {
     let length = chances.len() + width - 1;
+    let half = length.div_ceil(2);
+    let share = 1.0 / width as f64;
     let at = |index: usize| chances.get(index).copied().unwrap_or(0.0);
-    let mut from_start = vec![0.0; length];
-    let mut to_end = vec![0.0; length];
-    for index in 0..length {
-        let carried = if index % width == 0 { 0.0 } else { from_start[index - 1] };
-        from_start[index] = carried + at(index);
+    let kept = |chance: f64| if chance < f64::MIN_POSITIVE { 0.0 } else { chance };
+    let mut sums = vec![0.0; length];
+    let mut to_end = vec![0.0; width + 1];
+    for start in (0..half).step_by(width) {
+        let mut from_start = 0.0;
+        for (index, sum) in sums[start..half.min(start + width)].iter_mut().enumerate() {
+            from_start += at(start + index);
+            *sum = kept((to_end[index + 1] + from_start) * share);
+        }
+        for index in (0..width).rev() {
+            to_end[index] = to_end[index + 1] + at(start + index);
+        }
     }
-    for index in (0..length).rev() {
-        let carried = if index % width == width - 1 || index + 1 == length { 0.0 } else { to_end[index + 1] };
-        to_end[index] = carried + at(index);
+    for index in half..length {
+        sums[index] = sums[length - 1 - index];
     }
-    let window = |last: usize| match (last + 1).checked_sub(width) {
-        Some(first) if first % width != 0 => to_end[first] + from_start[last],
-        _ => from_start[last],
-    };
-    (0..length).map(|last| window(last) / width as f64).collect()
+    sums
 }
 
 /// The chance of each number of rises from a group of `first` to a group of `second` readings.
+///
+/// The highest reading belongs to either group with a chance that is its share, and what is left is a smaller case.
 pub fn mann_whitney(first: usize, second: usize) -> Vec<f64> {
     let (long, short) = (first.max(second), first.min(second));
     let mut by_short: Vec<Vec<f64>> = vec![vec![1.0]; short + 1];
     for a in 1..=long {
         for b in 1..=short {
-            let mut chances = vec![0.0; a * b + 1];
-            let total = (a + b) as f64;
-            add_scaled(&mut chances[b..], &by_short[b], a as f64 / total);
-            add_scaled(&mut chances, &by_short[b - 1], b as f64 / total);
-            by_short[b] = chances;
+            let (smaller, rest) = by_short.split_at_mut(b);
+            let (smaller, chances) = (&smaller[b - 1], &mut rest[0]);
+            let reached = chances.len();
+            chances.resize(a * b + 1, 0.0);
+            chances.copy_within(..reached, b);
+            chances[..b].fill(0.0);
+            let (from_long, from_short) = (a as f64 / (a + b) as f64, b as f64 / (a + b) as f64);
+            let (shared, beyond) = chances.split_at_mut(smaller.len());
+            shared.iter_mut().zip(smaller).for_each(|(chance, less)| *chance = from_long * *chance + from_short * less);
+            beyond.iter_mut().for_each(|chance| *chance *= from_long);
         }
     }
     by_short.swap_remove(short)

@@ -12,7 +12,7 @@ use std::collections::{BTreeMap, HashMap};
 use super::Lattice;
 use super::strip::Strip;
 
-/// The most products that the distribution may take; about a third of a second on one core.
+/// The most products that the distribution may take; less than a second on one core.
 pub const MOST_PRODUCTS: f64 = 5e8;
 
 /// The ranks of one block in ascending order, in whole units.

@@ -9,8 +9,8 @@
 
 use crate::comparison::midranks::Classes;
 
-/// The most sets of taken ranks that may be followed: 20 readings without ties; about a tenth of a second on one core.
-pub const MOST_STATES: usize = 1 << 20;
+/// The most sets of taken ranks that may be followed: 18 readings without ties; some hundredths of a second on one core.
+pub const MOST_STATES: usize = 1 << 18;
 
 /// A walk strays at least this far: up, down, and to either side.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]

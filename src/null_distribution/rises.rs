@@ -12,7 +12,7 @@
 use super::{Lattice, hypergeometric};
 
 /// The most readings for which the distribution is made; time grows with their square.
-pub const MOST_READINGS: usize = 2_000;
+pub const MOST_READINGS: usize = 1_000;
 
 /// The number of rises among neighbours; `sizes` says how many readings have the lowest value, the next higher, and so on.
 pub fn rises(sizes: &[usize]) -> Lattice {

@@ -11,7 +11,7 @@ use super::Lattice;
 use super::binomial::Binomial;
 use super::lattice::add_scaled;
 
-/// The most products that an exact null distribution of this kind may need; about a third of a second on one core.
+/// The most products that an exact null distribution of this kind may need; less than a second on one core.
 pub const MOST_PRODUCTS: f64 = 5e8;
 
 /// How many products [`independent`] adds up.

@@ -4,7 +4,7 @@ use std::panic::{AssertUnwindSafe, catch_unwind};
 
 use risefall::finding::{Request, Wanted, examine};
 use risefall::method::question::Question;
-use risefall::method::{Datum, METHODS, Registered, Seek};
+use risefall::method::{Datum, Evidence, METHODS, Registered, Seek};
 use risefall::reading::{Missing, Value};
 
 use crate::inputs::{Input, Ties, forms_of_p};
@@ -21,7 +21,7 @@ fn awkward() -> Vec<Vec<Value>> {
         vec![number(2.0), number(1.0)],
         vec![number(1.0); 2],
         vec![number(0.0); 9],
-        vec![number(7.0); 30],
+        vec![number(7.0); 16],
         vec![BLANK; 8],
         vec![BLANK, number(3.0), BLANK],
         vec![BLANK, number(3.0), BLANK, number(4.0), BLANK, number(2.0), number(9.0), BLANK],
@@ -34,14 +34,14 @@ fn awkward() -> Vec<Vec<Value>> {
         vec![Value::Above(f64::MAX), Value::Below(f64::MIN), number(1.0), number(2.0)],
         vec![number(-3.0), number(-2.0), number(-2.0), number(-1.0)],
         vec![number(0.1), number(0.2), number(0.30000000000000004), number(0.3)],
-        (1..=12).map(|x| number(f64::from(x))).collect(),
-        (1..=12).rev().map(|x| number(f64::from(x))).collect(),
-        (0..12).map(|x| number(f64::from(x % 2))).collect(),
-        (0..400).map(|x| number(f64::from(x))).collect(),
+        (1..=9).map(|x| number(f64::from(x))).collect(),
+        (1..=9).rev().map(|x| number(f64::from(x))).collect(),
+        (0..10).map(|x| number(f64::from(x % 2))).collect(),
+        (0..60).map(|x| number(f64::from(x))).collect(),
     ];
     let mut random = Random::seeded(99);
-    for _ in 0..60 {
-        let n = random.whole(14);
+    for _ in 0..24 {
+        let n = random.whole(10);
         let value = |random: &mut Random| match random.whole(8) {
             0 => BLANK,
             1 => Value::Below(random.whole(4) as f64),
@@ -87,7 +87,7 @@ fn nothing_panics_and_every_number_is_one() {
         for values in awkward() {
             for input in surroundings(method, &values, &mut random) {
                 for p_by in forms_of_p(method) {
-                    let input = input.with(method, "p_by", p_by);
+                    let input = input.with(method, "p_by", p_by).with(method, "draws", "1000");
                     let checked = catch_unwind(AssertUnwindSafe(|| check(method, &input)));
                     assert!(checked.is_ok(), "{}: {input:?}", method.card.key);
                 }
@@ -108,7 +108,17 @@ fn check(method: &Registered, input: &Input) {
         assert!(outcome.smallest_p.is_none_or(|p| (0.0..=1.0).contains(&p)));
         assert!(outcome.readings_used <= input.values.len());
         for fact in &outcome.facts {
-            assert!(!matches!(fact.value, Datum::Number(number) if !number.is_finite()), "{} = {:?}", fact.key, fact.value);
+            assert!(is_number(&fact.value), "{} = {:?}", fact.key, fact.value);
+        }
+        for evidence in &outcome.evidence {
+            if let Evidence::Table(table) = evidence {
+                assert!(table.rows.iter().flatten().all(is_number), "{}: {:?}", table.caption, table.rows);
+            }
         }
     }
+}
+
+/// Whether a cell holds no infinity and nothing undefined.
+fn is_number(datum: &Datum) -> bool {
+    !matches!(datum, Datum::Number(number) if !number.is_finite())
 }

@@ -209,6 +209,11 @@ pub fn directions(outcome: &Outcome) -> Option<(f64, f64)> {
     Some((fact(outcome, "p_rising")?, fact(outcome, "p_falling")?))
 }
 
+/// The p-values for the two things that a test could find: a rise and a fall, or a smooth and an alternating order.
+pub fn both_tails(outcome: &Outcome) -> Option<(f64, f64)> {
+    directions(outcome).or_else(|| Some((fact(outcome, "p_smooth")?, fact(outcome, "p_alternating")?)))
+}
+
 /// Asserts that two p-values agree to nine digits.
 #[track_caller]
 pub fn same(got: f64, expected: f64, what: &str) {

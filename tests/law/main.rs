@@ -9,6 +9,8 @@ mod enumeration;
 mod inputs;
 mod invariance;
 mod random;
+mod simulation;
+mod size;
 mod tails;
 
 use inputs::{Input, Ties};

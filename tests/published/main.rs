@@ -4,13 +4,19 @@
 //! source, and what an independent computation gives) and `oracle` (values by enumeration, high-precision arithmetic,
 //! SciPy, statsmodels and R's base `stats`; `made_by` says which). `datasets.json` holds open series that they name,
 //! `tables.json` critical values and tail tables, each verified by enumeration.
+
+mod buishand_range;
 mod cochran_armitage;
 mod cox_stuart;
 mod difference_signs;
 mod event_trend;
 mod family;
+mod far_tails;
 mod jonckheere_terpstra;
 mod mann_kendall;
+mod normal_homogeneity;
+mod open_data;
+mod order_laws;
 mod page;
 mod pettitt;
 mod poisson_trend;
@@ -21,3 +27,4 @@ mod seasonal_kendall;
 mod spearman;
 mod theil_sen;
 mod turning;
+mod wired;
