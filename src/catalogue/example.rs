@@ -25,6 +25,9 @@ pub fn arguments(method: &Registered) -> Value {
     if method.parameters.iter().any(|parameter| parameter.name == "trials") {
         sent["trials"] = json!([20, 20, 20, 20, 20, 20, 20, 20, 20, 20, 20, 20]);
     }
+    if method.parameters.iter().any(|parameter| parameter.name == "covariate") {
+        sent["covariate"] = json!([31, 30, 33, 34, 31, 36, 35, 33, 37, 34, 38, 36]);
+    }
     sent
 }
 

@@ -92,7 +92,7 @@ impl Block {
     }
 
     fn slope(&self) -> Option<f64> {
-        Slopes::new(self.points()).median()
+        Slopes::new(self.points()).median().filter(|slope| slope.is_finite())
     }
 }
 

@@ -90,7 +90,10 @@ impl Walk {
         let mean = scaled.iter().sum::<f64>() / scaled.len() as f64;
         let deviations: Vec<f64> = scaled.iter().map(|number| number - mean).collect();
         let length = deviations.iter().map(|deviation| deviation * deviation).sum::<f64>().sqrt();
-        let sums = partial_sums(&deviations).into_iter().map(|sum| sum / length).collect();
+        // A sum that is 0 but for rounding is 0: which side of 0 it lies on must not matter.
+        let rounding = 1e-14 * numbers.len() as f64;
+        let clean = |sum: f64| if sum.abs() < rounding { 0.0 } else { sum };
+        let sums = partial_sums(&deviations).into_iter().map(|sum| clean(sum / length)).collect();
         Ok(Walk { indices, mean: middle + scale * mean, length: scale * length, sums })
     }
 

@@ -138,12 +138,12 @@ impl Method for TheilSen {
             Fact::new(
                 "intercept",
                 "Level at moment 0 that leaves as many readings above the line as below",
-                residual_median(&points, slope),
+                residual_median(&points, slope).filter(is_number),
             ),
             Fact::new(
                 "intercept_medians",
                 "Level at moment 0 of the line through the median moment and the median reading",
-                through_medians(&points, slope),
+                through_medians(&points, slope).filter(is_number),
             ),
             Fact::new("s", "S: rises less falls", score.s()),
             Fact::new("tau", "Kendall's tau-b", score.tau_b()),
@@ -168,6 +168,11 @@ impl Method for TheilSen {
             cautions,
         })
     }
+}
+
+/// What numbers near the largest one lead to is no number.
+fn is_number(value: &f64) -> bool {
+    value.is_finite()
 }
 
 fn median(mut values: Vec<f64>) -> Option<f64> {
@@ -215,14 +220,10 @@ fn listed(series: &Series, ordered: &Ordered, points: &[Point], slope: f64) -> T
     let intercept = residual_median(points, slope).unwrap_or_default();
     let row = |(&index, point): (&usize, &Point)| -> Vec<Datum> {
         let line = intercept + slope * point.time;
+        let above = number(series.values[index]) - line;
         let value = Datum::of_reading(series, index);
-        vec![
-            (index + 1).into(),
-            series.moments.label(index).into(),
-            value,
-            line.into(),
-            (number(series.values[index]) - line).into(),
-        ]
+        let shown = |value: f64| Some(value).filter(is_number);
+        vec![(index + 1).into(), series.moments.label(index).into(), value, shown(line).into(), shown(above).into()]
     };
     Table { caption: "Readings and the line".into(), rows: ordered.indices.iter().zip(points).map(row).collect(), columns }
 }

@@ -35,7 +35,7 @@ const BY_RISES_AND_FALLS: Evidence = |outcome| (fact(outcome, "rises").unwrap(),
 fn arrangements(method: &Registered) -> Option<(Arrangements, Evidence)> {
     Some(match (method.card.key, method.card.scale) {
         ("cox-stuart", _) => (Arrangements::ExchangesWithinPairs, BY_STATISTIC),
-        ("page", _) => (Arrangements::OrdersWithinBlocks, BY_STATISTIC),
+        ("page" | "seasonal-kendall" | "regional-kendall", _) => (Arrangements::OrdersWithinBlocks, BY_STATISTIC),
         ("cochran-armitage", _) => (Arrangements::EventsAmongTrials, BY_STATISTIC),
         ("poisson-trend", _) => (Arrangements::MomentsOfEvents, BY_STATISTIC),
         ("reverse-arrangements", _) => (Arrangements::Orders, BY_STATISTIC_TURNED),
@@ -49,7 +49,8 @@ fn arrangements(method: &Registered) -> Option<(Arrangements, Evidence)> {
 }
 
 /// Tests whose p is not a count of arrangements by their own statistic, and why.
-const EXEMPT: [(&str, &str); 2] = [
+const EXEMPT: [(&str, &str); 3] = [
+    ("partial-kendall", "p is that of the normal approximation; its parts are checked by hand in tests/published"),
     ("laplace", "times are continuous; checked against exact rationals in null_distribution::sum_of_uniforms"),
     ("military-handbook", "times are continuous; checked against high precision in null_distribution::chi_square"),
 ];

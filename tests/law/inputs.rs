@@ -59,6 +59,14 @@ impl Input {
                 let moments = (0..n).map(|index| (index * 4 / n.max(1)) as f64).collect();
                 Input { moments: Some(moments), ..Input::readings(random, n, heavy) }
             }
+            ("seasonal-kendall" | "regional-kendall", _) => {
+                let blocks = (0..n).map(|index| index % 2).collect();
+                Input { blocks: Some(blocks), ..Input::readings(random, n, heavy) }
+            }
+            ("partial-kendall", _) => {
+                let covariate = (0..n).map(|_| random.whole(20) as f64).collect();
+                Input { beside: vec![("covariate", covariate)], ..Input::readings(random, n, heavy) }
+            }
             ("page", _) => {
                 let moments = if n < 8 { 2 } else { 4 };
                 let blocks = n / moments;

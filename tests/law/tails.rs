@@ -66,8 +66,8 @@ fn the_clearest_rise_reaches_the_smallest_p() {
         }
         let mut sorted: Vec<f64> = input.values.iter().filter_map(|value| value.number()).collect();
         sorted.sort_by(f64::total_cmp);
-        if input.blocks.is_some() {
-            sorted = input.moments.clone().unwrap();
+        if let (Some(_), Some(moments)) = (&input.blocks, &input.moments) {
+            sorted.clone_from(moments);
         }
         let ascending = Input { values: Input::of_numbers(sorted).values, ..input.clone() };
         let Ok(outcome) = ascending.judge(method, Seek::Rising) else { return };

@@ -66,6 +66,23 @@ for n, falls in [(60, 2), (200, 5)]:
 
 for n, swaps in [(20, 0), (40, 3), (100, 7)]:
     tail = Fraction(sum(inversions(n)[: swaps + 1]), factorial(n))
+    for method in ["mann-kendall", "theil-sen"]:
+        case(method, {"readings": sorted_but(n, swaps)}, "p_rising", tail, "product of 1 + q + ... + q^(i-1)")
+
+for blocks, n, swaps in [(4, 10, 1), (12, 20, 4)]:
+    # Each block has n readings in order, but for one swap in the first `swaps` of them.
+    total = [1]
+    for _ in range(blocks):
+        total = times(total, inversions(n))[: swaps + 1]
+    tail = Fraction(sum(total), factorial(n) ** blocks)
+    rows = [sorted_but(n, 1 if block < swaps else 0) for block in range(blocks)]
+    readings = [rows[block][moment] for moment in range(n) for block in range(blocks)]
+    body = {"readings": readings, "blocks": [f"b{block}" for _ in range(n) for block in range(blocks)]}
+    for method in ["seasonal-kendall", "regional-kendall"]:
+        case(method, body, "p_rising", tail, "powers of the product of 1 + q + ... + q^(i-1)")
+
+for n, swaps in [(20, 0), (40, 3), (100, 7)]:
+    tail = Fraction(sum(inversions(n)[: swaps + 1]), factorial(n))
     body = {"readings": sorted_but(n, swaps), "readings_are": "gaps"}
     case("reverse-arrangements", body, "p_falling", tail, "product of 1 + q + ... + q^(i-1)")
 
