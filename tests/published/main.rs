@@ -10,6 +10,7 @@ mod difference_signs;
 mod event_trend;
 mod family;
 mod jonckheere_terpstra;
+mod kendall_enumerated;
 mod page;
 mod pettitt;
 mod poisson_trend;
