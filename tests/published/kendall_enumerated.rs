@@ -85,7 +85,8 @@ fn regional_p_is_the_share_of_all_pairs_of_orders() {
         let (first, second) = (orders(&moments, &a), orders(&moments, &b));
         let sums: Vec<i64> = first.iter().flat_map(|x| second.iter().map(move |y| x + y)).collect();
         let places: Vec<&str> = [["a"; 5], ["b"; 5]].concat();
-        let body = json!({ "readings": [a.clone(), b.clone()].concat(), "moments": [moments.clone(), moments.clone()].concat(), "blocks": places, "p_by": "exact" });
+        let (readings, twice) = ([&a[..], &b[..]].concat(), [&moments[..], &moments[..]].concat());
+        let body = json!({ "readings": readings, "moments": twice, "blocks": places, "p_by": "exact" });
         let Ok(outcome) = ask("regional-kendall", body).1 else { continue };
         let what = format!("{a:?} {b:?}");
         close(fact(&outcome, "s"), &json!(observed), 0.0, &what);
