@@ -13,6 +13,7 @@ mod event_trend;
 mod family;
 mod far_tails;
 mod jonckheere_terpstra;
+mod kendall_enumerated;
 mod mann_kendall;
 mod normal_homogeneity;
 mod open_data;

@@ -109,38 +109,3 @@ fn variance_corrected_for_dependence() {
     }
     assert!(checked >= 12, "only {checked} corrected variances were checked");
 }
-
-/// Wisconsin Administrative Code, natural attenuation appendix, Table A: five readings, two of them equal; each row of the
-/// table adds up the signs of the readings after one of them.
-#[test]
-fn a_published_worksheet() {
-    let case = published("mann_kendall", "wisconsin_table_a");
-    let outcome = ask("mann-kendall", body(data(&case), json!({ "seek": "falling" }))).1.unwrap();
-    close(fact(&outcome, "s"), &case["published"]["S"], 0.0, "S");
-    close(outcome.p.value, &case["recomputed"]["p_exact_decreasing"], 1e-12, "p");
-}
-
-/// The smallest S whose tail does not exceed the risk, by enumeration; and the printed table for a risk of 0.2 that the file names.
-#[test]
-fn critical_values() {
-    let tables = file("tables.json");
-    let mut checked = 0;
-    let null = |n: &str| rises_less_falls(&vec![1; n.parse().unwrap()], &vec![1; n.parse().unwrap()]);
-    for (n, row) in tables["kendall_S_critical"]["table"].as_object().unwrap() {
-        let null = null(n);
-        for (risk, critical) in row.as_object().unwrap() {
-            let risk: f64 = risk.parse().unwrap();
-            let least = null.points().map(|(s, _)| s).find(|&s| null.tails(s).upper <= risk * (1.0 + 1e-12));
-            assert_eq!(least, critical.as_i64(), "n {n}, risk {risk}");
-            checked += 1;
-        }
-    }
-    for (n, row) in tables["kendall_S_alpha_0.20"]["verified"].as_object().unwrap() {
-        let (critical, next) = (row["critical"].as_i64().unwrap(), row["next_attainable"].as_i64().unwrap());
-        let null = null(n);
-        assert!(null.tails(critical).lower <= 0.2 && null.tails(next).lower > 0.2, "n {n}");
-        close(null.tails(critical).lower, &row["p_at"], 1e-12, n);
-        checked += 1;
-    }
-    assert!(checked > 60, "only {checked} critical values were checked");
-}
