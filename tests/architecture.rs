@@ -28,6 +28,7 @@ const OWNERS: &[(&str, &str)] = &[
     ("quick_xml", "workbook/graft"),
     ("actix_web", "service"),
     ("actix_multipart", "service"),
+    ("sha2", "workbook"),
     ("clap", "command"),
     ("indicatif", "command"),
     ("statrs", "null_distribution"),

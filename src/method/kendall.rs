@@ -16,7 +16,7 @@ use crate::reading::moment::MomentKind;
 use crate::reading::{Series, Value};
 
 /// Up to which size the null distribution of S is exact, for the cards.
-pub const EXACT: &str = "Up to 500 million additions: 900 readings without ties or with ties among the readings; with several readings at a moment too, fewer, such as 50 readings in three grades.";
+pub const EXACT: &str = "Up to 500 million additions: 1,000 readings without ties, 250 to 400 with ties among them; with several readings at a moment too, fewer, such as 50 readings in three grades.";
 
 /// What becomes of limits, for the cards.
 pub const MISSING: &str = "Gaps are closed up. Limits such as <0.5 are compared where the order is certain and tie where it is not; limits at several levels leave the normal approximation only.";
@@ -165,7 +165,7 @@ pub fn is_exact(p_by: PBy, effort: f64) -> Result<bool, Refusal> {
         ));
     }
     let millions = |products: f64| (products / 1e6).min(1e15).ceil() as usize;
-    p_by.is_exact("million products of chances (900 readings without ties)", millions(effort), millions(MOST_PRODUCTS))
+    p_by.is_exact("million products of chances (1,000 readings without ties)", millions(effort), millions(MOST_PRODUCTS))
 }
 
 /// What S attains by the normal approximation; `most` is its largest value.

@@ -224,7 +224,7 @@ pub fn places(
 }
 
 /// About how many readings without ties the exact range takes.
-const MOST_READINGS: usize = 900;
+const MOST_READINGS: usize = 1_000;
 
 /// The slope at a place; between two slopes, in proportion.
 fn at(slopes: &Slopes, place: f64) -> f64 {

@@ -11,6 +11,7 @@ use jiff::civil::DateTime;
 use super::graft::{self, Limits, Workbook};
 use super::indicator::{Indicator, Judged};
 use super::judge::{cells_as_found, draft, judge, together};
+use super::log::LogRow;
 use super::package_kind::PackageKind;
 use super::plan::{Plan, PlanRow};
 use super::render::{self, SheetNames};
@@ -90,12 +91,17 @@ pub fn annotate(
         annotated.kind = book.package_kind();
         check_allowed(&book, settings, &mut annotated.notes)?;
         let earlier: Vec<String> = book.earlier_sheets().iter().map(|sheet| sheet.name.clone()).collect();
-        let plan = earlier.iter().find(|name| SheetNames::is_plan(name)).cloned();
-        let skip: Vec<String> = earlier.into_iter().filter(|name| Some(name) != plan.as_ref()).collect();
+        let named = |is: fn(&str) -> bool| earlier.iter().find(|name| is(name)).cloned();
+        let (plan, log) = (named(SheetNames::is_plan), named(SheetNames::is_log));
+        let read = |name: &String| Some(name) == plan.as_ref() || Some(name) == log.as_ref();
+        let skip: Vec<String> = earlier.iter().filter(|name| !read(name)).cloned().collect();
         let mut cells = read_and_verify(input, &skip, progress, &mut annotated.notes)?;
-        let plan = plan.and_then(|name| take_plan(&mut cells, &name));
+        let kept = Kept {
+            plan: plan.and_then(|name| render::read_back(&take_sheet(&mut cells, &name))),
+            log: log.map(|name| render::read_log(&take_sheet(&mut cells, &name))).unwrap_or_default(),
+        };
         let dates_from_1904 = book.dates_from_1904();
-        write(book, cells, plan, dates_from_1904, settings, made_on, output, annotated, progress)
+        write(book, cells, kept, dates_from_1904, settings, made_on, output, annotated, progress)
     } else {
         let cells = read_cells(input, format, &[], progress, &mut annotated.notes)?;
         annotated.notes.push("The file is not of a form that sheets can be added to; the copy is a new workbook with its values and the new sheets.".into());
@@ -103,7 +109,7 @@ pub fn annotate(
             cells.sheets.iter().map(|sheet| (sheet.name.as_str(), Box::new(cells.all(sheet)) as Box<dyn Iterator<Item = _>>));
         let values = render::values_only(sheets)?;
         let book = Workbook::open(Cursor::new(values), Limits::default())?;
-        write(book, cells, None, false, settings, made_on, output, annotated, progress)
+        write(book, cells, Kept::default(), false, settings, made_on, output, annotated, progress)
     }
 }
 
@@ -181,18 +187,25 @@ fn read_cells(
     }
 }
 
-/// Takes the plan's sheet out of the cells and reads it.
-fn take_plan(cells: &mut Cells, name: &str) -> Option<Plan> {
-    let plan = render::read_back(&cells.texts_of(name));
+/// What an earlier annotation left to be read.
+#[derive(Default)]
+struct Kept {
+    plan: Option<Plan>,
+    log: Vec<LogRow>,
+}
+
+/// Takes a sheet of ours out of the cells, as text.
+fn take_sheet(cells: &mut Cells, name: &str) -> Vec<Vec<String>> {
+    let rows = cells.texts_of(name);
     cells.sheets.retain(|sheet| sheet.name != name);
-    plan
+    rows
 }
 
 #[allow(clippy::too_many_arguments, reason = "the last steps need what all earlier ones found")]
 fn write<R: Read + Seek>(
     book: Workbook<R>,
     cells: Cells,
-    plan: Option<Plan>,
+    Kept { plan, log }: Kept,
     date_1904: bool,
     settings: &Settings,
     made_on: DateTime,
@@ -219,6 +232,7 @@ fn write<R: Read + Seek>(
         names: &names,
         remarks: &remarks,
         unjudged: &unjudged,
+        earlier_log: &log,
         date_1904,
         made_on,
     })?;

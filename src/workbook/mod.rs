@@ -9,6 +9,7 @@ pub mod annotate;
 pub mod graft;
 pub mod indicator;
 pub mod judge;
+pub mod log;
 pub mod package_kind;
 pub mod plan;
 pub mod reference;

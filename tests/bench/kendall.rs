@@ -19,7 +19,7 @@ fn main() {
         std::fs::write(folder.path().join(name), bytes).expect("the readings are written");
     };
     let (million, thousand, many) = (noise(1_000_000), noise(1_000), noise(20_000));
-    let tied: Vec<f64> = thousand.iter().map(|reading| (reading * 20.0).floor()).collect();
+    let tied: Vec<f64> = thousand[..250].iter().map(|reading| (reading * 20.0).floor()).collect();
     save("s", &million);
     save("exact", &thousand);
     save("slope", &many);
@@ -41,7 +41,7 @@ fn main() {
     };
     report("S of 1,000,000 readings", &s, fact(&s.1, "tau"), scipy("s"), 3.0);
     report("exact p of 1,000 readings", &exact, exact.1.p.value, scipy("exact"), 10.0);
-    println!("exact p of 1,000 readings with ties: {:.4} s by {}; SciPy refuses ties", exact_tied.0, exact_tied.1.p.by);
+    println!("exact p of 250 readings with ties: {:.4} s by {}; SciPy refuses ties", exact_tied.0, exact_tied.1.p.by);
     report("slope and limits of 20,000 readings", &slope, fact(&slope.1, "slope"), scipy("slope"), 1_000.0);
     println!("slope and limits of 100,000 readings: {:.4} s", longer.0);
     assert!(output.status.success(), "SciPy's part failed: {}", String::from_utf8_lossy(&output.stderr));

@@ -1,10 +1,13 @@
 //! What an annotated copy holds.
 
+use std::collections::BTreeMap;
+
 use risefall::finding::Word;
 
 use crate::helpers::{Desk, row, weekly};
 
-const NEW_SHEETS: [&str; 5] = ["Trend conclusions", "Trend statistics", "Trend pairings", "Trend charts", "Trend plan"];
+const NEW_SHEETS: [&str; 6] =
+    ["Trend conclusions", "Trend statistics", "Trend pairings", "Trend charts", "Trend plan", "Trend log"];
 
 #[test]
 fn the_indicators_are_found_and_judged_together() {
@@ -63,9 +66,41 @@ fn annotating_again_replaces_and_does_not_pile_up() {
     desk.annotate("once.xlsx", "twice.xlsx", &[]).unwrap();
     let (once, twice) = (desk.parts("once.xlsx"), desk.parts("twice.xlsx"));
     assert_eq!(once.keys().collect::<Vec<_>>(), twice.keys().collect::<Vec<_>>());
+    let log = log_part(&once);
+    // What is kept to undo the annotation names what was written, and so follows the log; it does not grow.
+    let undo = "xl/risefall/before.bin";
+    assert_eq!(once[undo].len(), twice[undo].len());
     for (name, bytes) in &once {
-        assert!(twice[name] == *bytes, "{name} differs after the second time");
+        assert!(twice[name] == *bytes || [log.as_str(), undo].contains(&name.as_str()), "{name} differs after the second time");
     }
+}
+
+/// The part of the sheet that grows.
+fn log_part(parts: &BTreeMap<String, Vec<u8>>) -> String {
+    let is_log = |(_, bytes): &(&String, &Vec<u8>)| bytes.windows(8).any(|window| window == b"Checksum");
+    parts.iter().filter(|(name, _)| name.starts_with("xl/worksheets/")).find(is_log).unwrap().0.clone()
+}
+
+/// Ten times: the same sheets and parts, one row more in the log each time for each indicator, the earlier rows as they were.
+#[test]
+fn the_log_grows_and_nothing_else() {
+    let desk = Desk::new();
+    desk.put("0.xlsx", &weekly());
+    for run in 0..10 {
+        desk.annotate(&format!("{run}.xlsx"), &format!("{}.xlsx", run + 1), &[]).unwrap();
+    }
+    let rows = |name: &str| -> Vec<Vec<String>> {
+        let log = desk.sheet(name, "Trend log");
+        log.rows().skip(3).map(|row| row.iter().map(ToString::to_string).collect()).collect()
+    };
+    let (first, last) = (rows("1.xlsx"), rows("10.xlsx"));
+    assert_eq!((first.len(), last.len()), (3, 30));
+    assert_eq!(last.chunks(3).filter(|run| *run == first).count(), 10, "the same readings, the same rows");
+    let falls = &first[0];
+    assert_eq!((falls[0].as_str(), falls[1].as_str(), falls[4].as_str()), ("2026-01-05 09:00:00", "Falls reported", "rising"));
+    assert_eq!(falls[6].parse::<f64>().unwrap(), 2.0 / 1024.0);
+    let sizes = ["1.xlsx", "10.xlsx"].map(|name| desk.parts(name).len());
+    assert_eq!(sizes[0], sizes[1]);
 }
 
 #[test]

@@ -7,6 +7,7 @@
 mod charts;
 mod conclusions;
 mod live;
+mod log_sheet;
 mod look;
 mod pairings;
 mod plan_sheet;
@@ -17,6 +18,7 @@ mod wording;
 use jiff::civil::DateTime;
 use rust_xlsxwriter::{DocProperties, ExcelDateTime, Workbook, Worksheet, XlsxError};
 
+pub use log_sheet::read_back as read_log;
 pub use plan_sheet::read_back;
 pub use values::values_only;
 
@@ -43,6 +45,7 @@ pub struct SheetNames {
     pub pairings: String,
     pub charts: String,
     pub plan: String,
+    pub log: String,
 }
 
 impl SheetNames {
@@ -59,6 +62,7 @@ impl SheetNames {
             pairings: free(wording::PAIRINGS),
             charts: free(wording::CHARTS),
             plan: free(wording::PLAN),
+            log: free(wording::LOG),
         }
     }
 
@@ -67,8 +71,13 @@ impl SheetNames {
         name.starts_with(wording::PLAN)
     }
 
+    /// Whether a name is the log's, with or without a number behind it.
+    pub fn is_log(name: &str) -> bool {
+        name.starts_with(wording::LOG)
+    }
+
     fn list(&self) -> Vec<String> {
-        [&self.conclusions, &self.statistics, &self.pairings, &self.charts, &self.plan].map(String::clone).to_vec()
+        [&self.conclusions, &self.statistics, &self.pairings, &self.charts, &self.plan, &self.log].map(String::clone).to_vec()
     }
 }
 
@@ -84,6 +93,8 @@ pub struct Input<'a> {
     pub remarks: &'a [String],
     /// Rows of the plan that are not judged.
     pub unjudged: &'a [super::PlanRow],
+    /// The rows that the log already has.
+    pub earlier_log: &'a [super::log::LogRow],
     /// Whether the workbook counts its dates from 1904.
     pub date_1904: bool,
     /// When this is made.
@@ -116,6 +127,7 @@ pub fn render(input: &Input) -> Result<Donor, Error> {
     let (charts, placeholders) = charts::sheets(input, &look)?;
     sheets.push(charts);
     sheets.push(plan_sheet::sheet(input, &look)?);
+    sheets.push(log_sheet::sheet(input, &look)?);
     for sheet in sheets.into_iter().chain(placeholders) {
         workbook.push_worksheet(sheet);
     }

@@ -1,6 +1,6 @@
 //! `Trend plan`: every choice that was made, to be edited and obeyed at the next annotation.
 
-use rust_xlsxwriter::{DataValidation, Worksheet};
+use rust_xlsxwriter::{DataValidation, Formula, Worksheet};
 
 use super::look::{Look, height};
 use super::wording::PLAN_COLUMNS;
@@ -10,6 +10,7 @@ use crate::finding::{Adjustment, Word};
 use crate::method::declaration::{Kind, Shape};
 use crate::method::{METHODS, Seek};
 use crate::workbook::plan::{Plan, PlanRow};
+use crate::workbook::reference::column_letters;
 
 const HEADING_ROW: u32 = 3;
 
@@ -52,15 +53,31 @@ pub fn sheet(input: &Input, look: &Look) -> Result<Worksheet, Error> {
         row += 1;
     }
     let last = (row + 200).max(row);
-    let tests: Vec<&str> = METHODS.iter().map(|method| method.card.key).collect();
-    for (column, list) in [(0, vec!["yes", "no"]), (6, words::<Wanted>()), (7, words::<Seek>()), (8, tests)] {
-        // A list in a validation holds at most 255 characters; beyond that the words are checked when the plan is read.
-        if list.join(",").len() <= 255 {
-            let choice = DataValidation::new().allow_list_strings(&list)?;
-            sheet.add_data_validation(HEADING_ROW + 1, column, last, column, &choice)?;
-        }
+    for (column, list) in [(0, vec!["yes", "no"]), (6, words::<Wanted>()), (7, words::<Seek>())] {
+        let choice = DataValidation::new().allow_list_strings(&list)?;
+        sheet.add_data_validation(HEADING_ROW + 1, column, last, column, &choice)?;
     }
+    let tests = list_tests(&mut sheet, look)?;
+    let choice = DataValidation::new().allow_list_formula(tests);
+    sheet.add_data_validation(HEADING_ROW + 1, 8, last, 8, &choice)?;
     Ok(sheet)
+}
+
+/// Lists all tests with their questions beside the plan; the range of their names.
+fn list_tests(sheet: &mut Worksheet, look: &Look) -> Result<Formula, Error> {
+    const COLUMN: u16 = PLAN_COLUMNS.len() as u16 + 1;
+    for (offset, (label, width)) in wording::TEST_COLUMNS.into_iter().enumerate() {
+        sheet.set_column_width(COLUMN + offset as u16, width)?;
+        sheet.write_with_format(HEADING_ROW, COLUMN + offset as u16, label, &look.heading)?;
+    }
+    let mut row = HEADING_ROW;
+    for method in METHODS {
+        row += 1;
+        sheet.write_with_format(row, COLUMN, method.card.key, &look.text)?;
+        sheet.write_with_format(row, COLUMN + 1, method.card.question, &look.text)?;
+    }
+    let letters = column_letters(COLUMN.into());
+    Ok(Formula::new(format!("=${letters}${}:${letters}${}", HEADING_ROW + 2, row + 1)))
 }
 
 /// The cells of a row in the order of [`PLAN_COLUMNS`], the remark left out.

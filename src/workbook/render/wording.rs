@@ -5,6 +5,23 @@ pub const STATISTICS: &str = "Trend statistics";
 pub const PAIRINGS: &str = "Trend pairings";
 pub const CHARTS: &str = "Trend charts";
 pub const PLAN: &str = "Trend plan";
+pub const LOG: &str = "Trend log";
+
+pub const LOG_TITLE: &str =
+    "What was said at each run. Rows are only ever added; the checksum changes when a reading was corrected.";
+pub const LOG_COLUMNS: [(&str, f64); 11] = [
+    ("When", 19.0),
+    ("Indicator", 30.0),
+    ("Cells", 28.0),
+    ("Readings", 9.0),
+    ("Conclusion", 12.0),
+    ("In words", 60.0),
+    ("p", 10.0),
+    ("p, judged together", 10.0),
+    ("Test", 18.0),
+    ("Checksum", 18.0),
+    ("Program", 16.0),
+];
 
 pub const CONCLUSION_COLUMNS: [(&str, f64); 11] = [
     ("Indicator", 22.0),
@@ -75,5 +92,7 @@ pub const PLAN_COLUMNS: [(&str, f64, &str); 13] = [
     ("Origin", 34.0, "Where the choices come from."),
     ("Remark", 44.0, "What is to be said of this row."),
 ];
+/// The list of tests beside the plan.
+pub const TEST_COLUMNS: [(&str, f64); 2] = [("Name of the test", 22.0), ("What it asks", 90.0)];
 pub const PLAN_TITLE: &str = "What is judged, and how. Edits are obeyed at the next annotation.";
 pub const ADJUSTMENT: &str = "Judged together by";
