@@ -40,6 +40,11 @@ impl Word {
         }
     }
 
+    /// Whether something is shown: a trend, a change, or an order that is not random.
+    pub fn shows_something(self) -> bool {
+        matches!(self, Word::Rising | Word::Falling | Word::Changed | Word::NotRandom)
+    }
+
     /// The direction that is claimed, if one is.
     pub fn direction(self) -> Direction {
         match self {

@@ -107,6 +107,10 @@ impl Method for TheilSen {
     };
 
     fn judge(series: &Series, question: &Question, parameters: &Parameters) -> Result<Outcome, Refusal> {
+        if series.scale.grades().is_some() {
+            let needs = "numbers whose differences mean something";
+            return Err(Refusal::Scale { test: Self::CARD.title, needs, are: "graded words" });
+        }
         let ordered = Ordered::of(series);
         let score = Score::of(&ordered);
         let axis = Axis::of(series, parameters.per)?;

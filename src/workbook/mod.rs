@@ -6,6 +6,7 @@
 //! - [`annotate`] is the way through the three.
 
 pub mod annotate;
+pub mod course;
 pub mod graft;
 pub mod indicator;
 pub mod judge;

@@ -52,6 +52,8 @@ fn the_sheets_say_what_was_found() {
     let falls = row(&conclusions, "Falls reported");
     assert_eq!((falls[1].to_string(), falls[2].to_string()), ("rising".into(), "not wanted".into()));
     assert!(falls[3].to_string().contains("of 10 pairs of an earlier and a later reading 10 rise, 0 fall"));
+    // One more each week, without exception.
+    assert_eq!(falls[9].to_string(), "52.18 (52.18 to 52.18) count a year");
     let pairings = desk.sheet("out.xlsx", "Trend pairings");
     let first = row(&pairings, "Falls reported");
     let shown: Vec<String> = [1, 2, 4, 5, 7, 8].iter().map(|&column: &usize| first[column].to_string()).collect();

@@ -6,11 +6,13 @@ use super::look::{Look, height};
 use super::statistics::Family;
 use super::{Error, Input, PROGRAM, fitting, page, wording};
 use crate::finding::Word;
-use crate::finding::sentence::percent;
+use crate::finding::sentence::{number, percent};
+use crate::workbook::course::{Course, course};
 use crate::workbook::indicator::{Judged, Rows};
 use crate::workbook::reference::quote_sheet;
 
 const HEADING_ROW: u32 = 3;
+const LAST: u16 = wording::CONCLUSION_COLUMNS.len() as u16 - 1;
 
 pub fn sheet(input: &Input, look: &Look, family: &Family) -> Result<Worksheet, Error> {
     let mut sheet = Worksheet::new();
@@ -37,10 +39,10 @@ pub fn sheet(input: &Input, look: &Look, family: &Family) -> Result<Worksheet, E
     let mut row = HEADING_ROW + 1 + order.len() as u32;
     if order.is_empty() {
         sheet.write_with_format(row, 0, wording::NOTHING_FOUND, &look.title)?;
-        sheet.merge_range(row + 1, 0, row + 1, 10, wording::LOOKED_FOR, &look.small)?;
+        sheet.merge_range(row + 1, 0, row + 1, LAST, wording::LOOKED_FOR, &look.small)?;
         row += 2;
     } else {
-        sheet.autofilter(HEADING_ROW, 0, row - 1, 10)?;
+        sheet.autofilter(HEADING_ROW, 0, row - 1, LAST)?;
     }
     write_notes(&mut sheet, row + 1, input, look)?;
     Ok(sheet)
@@ -121,34 +123,50 @@ fn write_row(
             .set_right_to_left(reversed);
         sheet.add_sparkline(row, 8, &spark)?;
     }
+    let course = course(series, finding);
+    let fast = how_fast(&course);
+    sheet.write_with_format(row, 9, &fast, &look.wrapped)?;
+    sheet.write_with_format(row, 10, course.since.unwrap_or_default(), &look.wrapped)?;
     let mut cautions = judged.indicator.remarks.clone();
     if let Ok(outcome) = &finding.result {
         cautions.extend(outcome.cautions.iter().cloned());
     }
     let cautions = fitting(&cautions.join(" "));
-    sheet.write_with_format(row, 9, &cautions, &look.wrapped)?;
+    sheet.write_with_format(row, 11, &cautions, &look.wrapped)?;
     let cells = judged.indicator.place.range().map(|range| range.to_string()).unwrap_or_default();
     let width = |column: usize| wording::CONCLUSION_COLUMNS[column].1;
     let wrapped = [
         (series.name.as_str(), width(0)),
         (finding.conclusion.sentence.as_str(), width(3)),
-        (cautions.as_str(), width(9)),
-        (cells.as_str(), width(10)),
+        (fast.as_str(), width(9)),
+        (cautions.as_str(), width(11)),
+        (cells.as_str(), width(12)),
     ];
     sheet.set_row_height(row, height(&wrapped))?;
     match judged.indicator.place.range() {
         Some(range) => {
             let shown = range.to_string();
-            sheet.write_url_with_format(row, 10, Url::new(format!("internal:{shown}")).set_text(shown), &look.link)?
+            sheet.write_url_with_format(row, LAST, Url::new(format!("internal:{shown}")).set_text(shown), &look.link)?
         }
-        None => sheet.write_with_format(row, 10, "", &look.text)?,
+        None => sheet.write_with_format(row, LAST, "", &look.text)?,
     };
     Ok(())
 }
 
+/// The slope with its limits and unit, such as `0.041 (0.022 to 0.060) min a year`.
+fn how_fast(course: &Course) -> String {
+    match &course.slope {
+        None => String::new(),
+        Some((slope, None, unit)) => format!("{} {unit}", number(*slope)),
+        Some((slope, Some((low, high)), unit)) => {
+            format!("{} ({} {} {}) {unit}", number(*slope), number(*low), wording::TO, number(*high))
+        }
+    }
+}
+
 fn write_notes(sheet: &mut Worksheet, mut row: u32, input: &Input, look: &Look) -> Result<(), Error> {
     let mut note = |sheet: &mut Worksheet, text: &str, lines: f64| -> Result<(), Error> {
-        sheet.merge_range(row, 0, row, 10, &fitting(text), &look.small)?;
+        sheet.merge_range(row, 0, row, LAST, &fitting(text), &look.small)?;
         sheet.set_row_height(row, 13.0 * lines)?;
         row += 1;
         Ok(())

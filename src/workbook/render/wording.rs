@@ -23,7 +23,7 @@ pub const LOG_COLUMNS: [(&str, f64); 11] = [
     ("Program", 16.0),
 ];
 
-pub const CONCLUSION_COLUMNS: [(&str, f64); 11] = [
+pub const CONCLUSION_COLUMNS: [(&str, f64); 13] = [
     ("Indicator", 22.0),
     ("Conclusion", 12.0),
     ("Wanted?", 11.0),
@@ -33,9 +33,13 @@ pub const CONCLUSION_COLUMNS: [(&str, f64); 11] = [
     ("Readings", 9.0),
     ("Missing", 8.0),
     ("Course", 18.0),
+    ("How fast", 22.0),
+    ("Since about", 12.0),
     ("To bear in mind", 36.0),
     ("Cells", 20.0),
 ];
+/// Between the limits of a slope.
+pub const TO: &str = "to";
 pub const WANTED: &str = "wanted";
 pub const UNWANTED: &str = "not wanted";
 pub const NOTHING_FOUND: &str = "No indicator was found to judge.";
