@@ -29,7 +29,7 @@ pub struct Point {
 /// Up to so many pairs, all slopes are computed at once.
 const FEW_PAIRS: u64 = 500_000;
 /// How many slopes are drawn at random in each round.
-const DRAWN: u64 = 2_000;
+const DRAWN: u64 = 20_000;
 
 impl Slopes {
     /// Slopes within one block.
@@ -83,11 +83,29 @@ impl Slopes {
             all.sort_unstable_by(f64::total_cmp);
             return ranks.iter().map(|&rank| outside(rank).unwrap_or_else(|| all[rank as usize - 1])).collect();
         }
-        ranks.iter().map(|&rank| outside(rank).unwrap_or_else(|| self.closed_in(rank))).collect()
+        let mut found: Vec<f64> = Vec::with_capacity(ranks.len());
+        for (place, &rank) in ranks.iter().enumerate() {
+            // The slope next to one that was just closed in on lies among the same few.
+            let slope = match outside(rank) {
+                Some(infinite) => infinite,
+                None if place > 0 && ranks[place - 1] == rank => found[place - 1],
+                None if ranks.get(place + 1) == Some(&(rank + 1)) && rank < self.pairs => {
+                    let both = self.closed_in(rank, 2);
+                    found.extend(both);
+                    continue;
+                }
+                None if found.len() > place => continue,
+                None => self.closed_in(rank, 1)[0],
+            };
+            if found.len() == place {
+                found.push(slope);
+            }
+        }
+        found
     }
 
-    /// The slope at a rank, by closing in on it.
-    fn closed_in(&self, rank: u64) -> f64 {
+    /// The slopes at a rank and at the `count` - 1 ranks after it, by closing in on them.
+    fn closed_in(&self, rank: u64, count: u64) -> Vec<f64> {
         let (mut low, mut high) = (f64::NEG_INFINITY, f64::INFINITY);
         let (mut below, mut inside) = (0, self.pairs);
         let mut draws = Draws(rank ^ self.pairs);
@@ -104,13 +122,17 @@ impl Slopes {
             let cut_low = if centre - margin < 0.0 { low } else { (first - self.slack(first)).max(low) };
             let cut_high = if centre + margin > last as f64 { high } else { (second + self.slack(second)).min(high) };
             let (below_low, below_high) = (self.below(cut_low), self.below(cut_high));
-            if rank <= below_low {
+            let last_rank = rank + count - 1;
+            if last_rank <= below_low {
                 (high, inside) = (cut_low, below_low - below);
             } else if rank > below_high {
                 inside = below + inside - below_high;
                 (low, below) = (cut_high, below_high);
+            } else if rank <= below_low || last_rank > below_high {
+                // The ranks lie on both sides of a cut; the next slopes drawn cut elsewhere.
+                continue;
             } else if first == second && cut_low > low && cut_high < high {
-                return first;
+                return vec![first; count as usize];
             } else if cut_low == low && cut_high == high {
                 break;
             } else {
@@ -120,10 +142,13 @@ impl Slopes {
         let mut all = Vec::with_capacity(inside as usize);
         self.each_between(low, high, &mut |slope| all.push(slope));
         if all.is_empty() {
-            return low.max(f64::MIN);
+            return vec![low.max(f64::MIN); count as usize];
         }
-        let place = ((rank - below).saturating_sub(1) as usize).min(all.len() - 1);
-        *all.select_nth_unstable_by(place, f64::total_cmp).1
+        let mut place = |rank: u64| {
+            let place = ((rank - below).saturating_sub(1) as usize).min(all.len() - 1);
+            *all.select_nth_unstable_by(place, f64::total_cmp).1
+        };
+        (rank..rank + count).map(&mut place).collect()
     }
 
     /// How far a cut must lie from a slope to be on the same side of it for all pairs, whatever is rounded.
@@ -156,10 +181,10 @@ impl Slopes {
         wanted.sort_unstable();
         let mut drawn = Vec::with_capacity(wanted.len());
         let (mut passed, mut next) = (0, 0);
-        self.each_run_between(low, high, &mut |point, others| {
+        self.each_run_between(low, high, &mut |points, one, others| {
             let end = passed + others.len() as u64;
             while next < wanted.len() && wanted[next] < end {
-                drawn.extend(slope(point, others[(wanted[next] - passed) as usize]));
+                drawn.extend(slope(points[one], points[others[(wanted[next] - passed) as usize].index as usize]));
                 next += 1;
             }
             passed = end;
@@ -168,65 +193,64 @@ impl Slopes {
     }
 
     fn each_between(&self, low: f64, high: f64, found: &mut dyn FnMut(f64)) {
-        self.each_run_between(low, high, &mut |point, others| {
-            others.iter().filter_map(|&other| slope(point, other)).for_each(&mut *found);
+        self.each_run_between(low, high, &mut |points, one, others| {
+            others.iter().filter_map(|other| slope(points[one], points[other.index as usize])).for_each(&mut *found);
         });
     }
 
     /// Hands over every point together with the points to which its slope lies between two cuts.
-    fn each_run_between(&self, low: f64, high: f64, found: &mut dyn FnMut(Point, &[Point])) {
+    fn each_run_between(&self, low: f64, high: f64, found: &mut dyn FnMut(&[Point], usize, &[Keyed])) {
         for block in &self.blocks {
             if low == f64::NEG_INFINITY && high == f64::INFINITY {
-                for (index, &point) in block.iter().enumerate() {
-                    let later = &block[index + 1..];
-                    found(point, &later[later.partition_point(|other| other.time == point.time)..]);
+                let all: Vec<Keyed> = (0..block.len() as u32).map(|index| Keyed { key: 0.0, index }).collect();
+                for one in 0..block.len() {
+                    let after = block[one..].partition_point(|other| other.time == block[one].time);
+                    found(block, one, &all[one + after..]);
                 }
                 continue;
             }
             // In the order at the low cut, a pair with a slope between the cuts stands the other way round at the high one.
-            let mut sorted = block.clone();
+            let mut order: Vec<Keyed> =
+                (0..).zip(block).map(|(index, point)| Keyed { key: point.value - low * point.time, index }).collect();
             if low != f64::NEG_INFINITY {
-                sort_at(&mut sorted, low);
+                order.sort_by(|a, b| a.key.total_cmp(&b.key));
             }
-            let keys: Vec<(f64, Point)> = sorted
-                .into_iter()
-                .map(|point| (if high == f64::INFINITY { -point.time } else { point.value - high * point.time }, point))
-                .collect();
-            merge_pairs(keys, found);
+            for keyed in &mut order {
+                let point = block[keyed.index as usize];
+                keyed.key = if high == f64::INFINITY { -point.time } else { point.value - high * point.time };
+            }
+            merge_pairs(order, &mut |one, others| found(block, one, others));
         }
     }
 }
 
-/// Sorts by what is left when a slope is taken off; what is equal stays in time order.
-fn sort_at(points: &mut [Point], cut: f64) {
-    points.sort_by(|a, b| (a.value - cut * a.time).total_cmp(&(b.value - cut * b.time)));
+/// A point of a block, and by what it is sorted.
+#[derive(Clone, Copy)]
+struct Keyed {
+    key: f64,
+    index: u32,
 }
 
 /// Hands over each point with the run of points before it whose key is higher.
-fn merge_pairs(mut keys: Vec<(f64, Point)>, found: &mut dyn FnMut(Point, &[Point])) {
+fn merge_pairs(mut from: Vec<Keyed>, found: &mut dyn FnMut(usize, &[Keyed])) {
+    let mut to = from.clone();
     let mut width = 1;
-    let mut left_points: Vec<Point> = Vec::new();
-    while width < keys.len() {
-        for run in keys.chunks_mut(2 * width) {
-            let middle = width.min(run.len());
-            let left: Vec<(f64, Point)> = run[..middle].to_vec();
-            left_points.clear();
-            left_points.extend(left.iter().map(|(_, point)| *point));
-            let (mut i, mut j) = (0, middle);
-            for place in 0..run.len() {
-                if j == run.len() || i < left.len() && left[i].0 <= run[j].0 {
-                    if i == left.len() {
-                        break;
-                    }
-                    run[place] = left[i];
+    while width < from.len() {
+        for (from, to) in from.chunks(2 * width).zip(to.chunks_mut(2 * width)) {
+            let (left, right) = from.split_at(width.min(from.len()));
+            let (mut i, mut j) = (0, 0);
+            for place in to {
+                if j == right.len() || i < left.len() && left[i].key <= right[j].key {
+                    *place = left[i];
                     i += 1;
                 } else {
-                    found(run[j].1, &left_points[i..]);
-                    run[place] = run[j];
+                    found(right[j].index as usize, &left[i..]);
+                    *place = right[j];
                     j += 1;
                 }
             }
         }
+        std::mem::swap(&mut from, &mut to);
         width *= 2;
     }
 }
@@ -280,8 +304,13 @@ mod tests {
             let slopes = Slopes::new(points);
             assert_eq!(slopes.count(), all.len() as u64);
             for rank in [1, 2, all.len() / 3, all.len() / 2, all.len() / 2 + 1, all.len() - 5, all.len()] {
-                let (got, expected) = (slopes.closed_in(rank as u64), all[rank - 1]);
+                let (got, expected) = (slopes.closed_in(rank as u64, 1)[0], all[rank - 1]);
                 assert!((got - expected).abs() <= 1e-10 * expected.abs().max(1e-6), "{rank}: {got} {expected}");
+            }
+            let middle = all.len() / 2;
+            let around: Vec<f64> = slopes.at_ranks(&[3, middle as u64, middle as u64 + 1, middle as u64 + 1, 9]);
+            for (got, expected) in around.iter().zip([all[2], all[middle - 1], all[middle], all[middle], all[8]]) {
+                assert!((got - expected).abs() <= 1e-10 * expected.abs().max(1e-6), "{got} {expected}");
             }
             assert_eq!(slopes.at_ranks(&[0, all.len() as u64 + 1]), [f64::NEG_INFINITY, f64::INFINITY]);
         }

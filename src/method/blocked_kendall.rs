@@ -22,7 +22,7 @@ use super::scores_covariance::covariance;
 use super::slope::{Estimate, LimitsBy, Places, number};
 use super::{Column, Datum, Direction, Evidence, Fact, Outcome, Question, Refusal, Source, Statistic, Table};
 use crate::comparison::{Point, Slopes};
-use crate::null_distribution::ordered_table::{self, MOST_PRODUCTS};
+use crate::null_distribution::ordered_table::MOST_PRODUCTS;
 use crate::null_distribution::{Attained, By, ChiSquare, Lattice};
 use crate::reading::{Series, Value};
 
@@ -177,12 +177,7 @@ impl Blocked {
         let (mut reach, mut effort) = (1.0, 0.0);
         for block in self.blocks.iter().filter(|block| block.score.pairs() > 0) {
             let values = block.score.pairs() as f64;
-            effort += reach * values
-                + if untied {
-                    ordered_table::effort(&block.score.moment_sizes, &vec![1; block.score.readings()])
-                } else {
-                    block.score.effort()
-                };
+            effort += reach * values + if untied { block.score.effort_if_untied() } else { block.score.effort() };
             reach += values;
         }
         effort
@@ -192,8 +187,8 @@ impl Blocked {
         let varying = self.blocks.iter().filter(|block| block.score.pairs() > 0);
         varying
             .map(|block| match untied {
-                true => ordered_table::rises_less_falls(&block.score.moment_sizes, &vec![1; block.score.readings()]),
-                false => block.score.null(),
+                true => block.score.null_if_untied().into_owned(),
+                false => block.score.null().clone(),
             })
             .reduce(|sum, next| sum.plus(&next))
             .unwrap_or_else(|| Lattice::constant(0))

@@ -284,7 +284,7 @@ fn shuffled(
         for &place in &order {
             drawn.extend((place * block..((place + 1) * block).min(n)).map(|index| values[(start + index) % n]));
         }
-        let counted = rises::count(&sizes, &drawn);
+        let counted = rises::count(&sizes, drawn.clone());
         let s = counted.rises as i64 - counted.falls as i64;
         low += f64::from(u8::from(s <= score.s()));
         high += f64::from(u8::from(s >= score.s()));

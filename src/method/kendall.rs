@@ -6,6 +6,9 @@
 //! moments and distinct values). Beyond the exact range S is referred to the normal distribution with its variance corrected
 //! for both kinds of ties, and moved half a step, which is 1, towards 0.
 
+use std::borrow::Cow;
+use std::cell::OnceCell;
+
 use super::Refusal;
 use super::question::PBy;
 use crate::comparison::groups::places;
@@ -52,7 +55,7 @@ impl Ordered {
 }
 
 /// Kendall's S with all that its null distribution needs.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug)]
 pub struct Score {
     /// Pairs from different moments that rise.
     pub rises: u64,
@@ -63,6 +66,8 @@ pub struct Score {
     /// How many readings share each value, the lowest first; `None` where limits leave no order in which ties carry over.
     pub tie_sizes: Option<Vec<usize>>,
     signs: Signs,
+    variance: f64,
+    null: OnceCell<Lattice>,
 }
 
 impl Score {
@@ -74,13 +79,16 @@ impl Score {
         let moment_sizes = moment_sizes.clone();
         match comparable {
             Some(numbers) => {
-                let rises::Rises { rises, falls, tie_sizes } = rises::count(&moment_sizes, &numbers);
+                let rises::Rises { rises, falls, tie_sizes } = rises::count(&moment_sizes, numbers);
                 let signs = Signs::of_sizes(&tie_sizes);
-                Score { rises, falls, moment_sizes, tie_sizes: Some(tie_sizes), signs }
+                let variance = signs.variance_with(&Signs::of_sizes(&moment_sizes));
+                Score { rises, falls, moment_sizes, tie_sizes: Some(tie_sizes), signs, variance, null: OnceCell::new() }
             }
             None => {
                 let (rises, falls) = pair_by_pair(values, &moment_sizes);
-                Score { rises, falls, moment_sizes, tie_sizes: None, signs: Signs::of_values(values) }
+                let signs = Signs::of_values(values);
+                let variance = signs.variance_with(&Signs::of_sizes(&moment_sizes));
+                Score { rises, falls, moment_sizes, tie_sizes: None, signs, variance, null: OnceCell::new() }
             }
         }
     }
@@ -102,7 +110,7 @@ impl Score {
 
     /// The variance of S without a trend.
     pub fn variance(&self) -> f64 {
-        self.signs.variance_with(&Signs::of_sizes(&self.moment_sizes))
+        self.variance
     }
 
     /// Kendall's tau-b: S over the geometric mean of the pairs that differ in moment and the pairs that differ in value.
@@ -119,7 +127,7 @@ impl Score {
         }
         let sorted: Vec<f64> =
             tie_sizes.iter().enumerate().flat_map(|(place, &size)| std::iter::repeat_n(place as f64, size)).collect();
-        rises::count(&self.moment_sizes, &sorted).rises as i64
+        rises::count(&self.moment_sizes, sorted).rises as i64
     }
 
     /// About how many products the exact null distribution takes; infinite where it cannot be counted.
@@ -128,10 +136,23 @@ impl Score {
     }
 
     /// The exact null distribution of S. Only to be asked for where [`effort`](Self::effort) is finite.
-    pub fn null(&self) -> Lattice {
-        match &self.tie_sizes {
+    pub fn null(&self) -> &Lattice {
+        self.null.get_or_init(|| match &self.tie_sizes {
             Some(tie_sizes) => ordered_table::rises_less_falls(&self.moment_sizes, tie_sizes),
             None => Lattice::constant(self.s()),
+        })
+    }
+
+    /// About how many products the null distribution takes that S would have if all readings differed.
+    pub fn effort_if_untied(&self) -> f64 {
+        ordered_table::effort(&self.moment_sizes, &vec![1; self.readings()])
+    }
+
+    /// The null distribution that S would have if all readings differed.
+    pub fn null_if_untied(&self) -> Cow<'_, Lattice> {
+        match &self.tie_sizes {
+            Some(tie_sizes) if tie_sizes.len() == self.readings() => Cow::Borrowed(self.null()),
+            _ => Cow::Owned(ordered_table::rises_less_falls(&self.moment_sizes, &vec![1; self.readings()])),
         }
     }
 
@@ -141,7 +162,7 @@ impl Score {
     /// The exact p was asked for where it cannot be counted.
     pub fn attained(&self, p_by: PBy, continuity: bool) -> Result<Attained, Refusal> {
         if is_exact(p_by, self.effort())? {
-            return Ok(Attained::exact(&self.null(), self.s()));
+            return Ok(Attained::exact(self.null(), self.s()));
         }
         Ok(by_normal(self.s(), self.most(), self.variance(), continuity))
     }

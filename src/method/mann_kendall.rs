@@ -148,13 +148,7 @@ impl Method for MannKendall {
         if series.scale.grades().is_none() && score.readings() <= MOST_WITH_SLOPE {
             let axis = Axis::of(series, parameters.per)?;
             let slopes = Slopes::new(points(series, &ordered, &axis));
-            let places = slope::places(
-                &score.moment_sizes,
-                score.variance(),
-                slopes.count(),
-                parameters.limits_by,
-                parameters.confidence.0,
-            )?;
+            let places = slope::places(&score, slopes.count(), parameters.limits_by, parameters.confidence.0)?;
             facts.extend(Estimate::of(&slopes, places).facts(&axis.unit(series)));
             if ordered.values.iter().any(|value| value.is_censored()) {
                 cautions.push(

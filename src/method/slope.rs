@@ -11,10 +11,10 @@
 //! section 16.5 (limits at places between two slopes). M. Hollander and D. A. Wolfe (1999), *Nonparametric Statistical
 //! Methods*, 2nd ed., section 9.3 (limits from the exact null distribution).
 
-use super::kendall::Ordered;
+use super::kendall::{Ordered, Score};
 use super::{Fact, Refusal, Source};
 use crate::comparison::{Point, Slopes};
-use crate::null_distribution::ordered_table::{self, MOST_PRODUCTS};
+use crate::null_distribution::ordered_table::MOST_PRODUCTS;
 use crate::null_distribution::{Lattice, normal};
 use crate::reading::moment::MomentKind;
 use crate::reading::{Series, Value};
@@ -198,28 +198,18 @@ impl Places {
 }
 
 /// The places of the limits in the form that is wanted; `None` if these readings set none. The exact ones are those for readings
-/// that all differ, `moment_sizes` of them at each moment; the normal ones take the variance of S.
+/// that all differ; the normal ones take the variance of S.
 ///
 /// # Errors
 /// The exact limits were asked for where they cannot be counted.
-pub fn places(
-    moment_sizes: &[usize],
-    variance: f64,
-    slopes: u64,
-    by: LimitsBy,
-    confidence: f64,
-) -> Result<Option<Places>, Refusal> {
-    let readings: usize = moment_sizes.iter().sum();
-    let untied = vec![1; readings];
-    let effort = ordered_table::effort(moment_sizes, &untied);
+pub fn places(score: &Score, slopes: u64, by: LimitsBy, confidence: f64) -> Result<Option<Places>, Refusal> {
+    let feasible = score.effort_if_untied() <= MOST_PRODUCTS;
     match by {
-        LimitsBy::Exact if effort > MOST_PRODUCTS => {
-            Err(Refusal::BeyondExact { what: "readings, with limits_by=exact", have: readings, most: MOST_READINGS })
+        LimitsBy::Exact if !feasible => {
+            Err(Refusal::BeyondExact { what: "readings, with limits_by=exact", have: score.readings(), most: MOST_READINGS })
         }
-        LimitsBy::Best | LimitsBy::Exact if effort <= MOST_PRODUCTS => {
-            Ok(Places::exact(slopes, &ordered_table::rises_less_falls(moment_sizes, &untied), confidence))
-        }
-        _ => Ok(Some(Places::normal(slopes, variance, confidence, by == LimitsBy::Interpolated))),
+        LimitsBy::Best | LimitsBy::Exact if feasible => Ok(Places::exact(slopes, &score.null_if_untied(), confidence)),
+        _ => Ok(Some(Places::normal(slopes, score.variance(), confidence, by == LimitsBy::Interpolated))),
     }
 }
 

@@ -129,7 +129,7 @@ impl Method for TheilSen {
         let estimate = match parameters.slope_by {
             SlopeBy::Pairs => {
                 let Parameters { limits_by, confidence, .. } = parameters;
-                let places = slope::places(&score.moment_sizes, score.variance(), slopes.count(), *limits_by, confidence.0)?;
+                let places = slope::places(&score, slopes.count(), *limits_by, confidence.0)?;
                 Estimate::of(&slopes, places)
             }
             SlopeBy::Repeated => Estimate { slope: repeated_median(&points)?, low: None, high: None },

@@ -33,47 +33,61 @@ pub fn effort(sizes: &[usize]) -> f64 {
 pub fn rises_less_falls(sizes: &[usize]) -> Lattice {
     let mut sorted: Vec<usize> = sizes.iter().copied().filter(|&size| size > 0).collect();
     sorted.sort_unstable_by(|a, b| b.cmp(a));
+    let tied = sorted.partition_point(|&size| size > 1);
     let mut before = 0;
     let mut rises = vec![1.0];
-    for size in sorted {
-        rises = match (before, size) {
-            (0, _) => rises,
-            (_, 1) => plus_uniform(&rises, before + 1),
-            _ => convolve(&rises, &mann_whitney(before, size)),
-        };
+    for &size in &sorted[..tied] {
+        rises = if before == 0 { rises } else { convolve(&rises, &mann_whitney(before, size)) };
         before += size;
     }
+    let rises = plus_uniforms(rises, before, sorted.len() - tied);
     let pairs = rises.len() as i64 - 1;
     Lattice::new(-pairs, 2, rises)
 }
 
-/// The chances of each sum of a symmetric count and an independent uniform one from 0 to `width` - 1.
+/// The chances of each sum of a count and independent uniform ones: one below `before` + 1, one below `before` + 2, and so on, `more`
+/// of them. Chances are the same from both ends, so only the lower half is carried along.
+fn plus_uniforms(chances: Vec<f64>, before: usize, more: usize) -> Vec<f64> {
+    let mut highest = chances.len() - 1;
+    let mut half = chances;
+    half.truncate(highest / 2 + 1);
+    let (mut sums, mut to_end) = (Vec::new(), Vec::new());
+    for width in before + 1..=before + more {
+        let lowest_half = (highest + width - 1) / 2 + 1;
+        for place in half.len()..lowest_half.min(highest + 1) {
+            half.push(half[highest - place]);
+        }
+        half.resize(lowest_half, 0.0);
+        add_windows(&half, width, &mut sums, &mut to_end);
+        std::mem::swap(&mut half, &mut sums);
+        highest += width - 1;
+    }
+    for place in half.len()..=highest {
+        half.push(half[highest - place]);
+    }
+    half
+}
+
+/// The mean over each window of `width` chances that ends at a place; before the first chance there is nothing.
 ///
-/// Each window is the end of one block of `width` chances and the start of the next, so nothing is ever subtracted. Half
-/// of the sums suffice, the others mirror them. What is too small to be kept to full precision is dropped, since
-/// arithmetic with such numbers is very slow.
-fn plus_uniform(chances: &[f64], width: usize) -> Vec<f64> {
-    let length = chances.len() + width - 1;
-    let half = length.div_ceil(2);
+/// Each window is the end of one block of `width` chances and the start of the next, so nothing is ever subtracted.
+fn add_windows(chances: &[f64], width: usize, means: &mut Vec<f64>, to_end: &mut Vec<f64>) {
+    means.clear();
+    to_end.clear();
+    to_end.resize(width + 1, 0.0);
     let share = 1.0 / width as f64;
-    let at = |index: usize| chances.get(index).copied().unwrap_or(0.0);
-    let kept = |chance: f64| if chance < f64::MIN_POSITIVE { 0.0 } else { chance };
-    let mut sums = vec![0.0; length];
-    let mut to_end = vec![0.0; width + 1];
-    for start in (0..half).step_by(width) {
+    for block in chances.chunks(width) {
         let mut from_start = 0.0;
-        for (index, sum) in sums[start..half.min(start + width)].iter_mut().enumerate() {
-            from_start += at(start + index);
-            *sum = kept((to_end[index + 1] + from_start) * share);
+        for (chance, before) in block.iter().zip(&to_end[1..]) {
+            from_start += chance;
+            means.push((from_start + before) * share);
         }
-        for index in (0..width).rev() {
-            to_end[index] = to_end[index + 1] + at(start + index);
+        let mut sum = 0.0;
+        for (place, chance) in block.iter().enumerate().rev() {
+            sum += chance;
+            to_end[place] = sum;
         }
     }
-    for index in half..length {
-        sums[index] = sums[length - 1 - index];
-    }
-    sums
 }
 
 /// The chance of each number of rises from a group of `first` to a group of `second` readings.

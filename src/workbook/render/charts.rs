@@ -73,6 +73,13 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
         sheet.insert_chart(top, left, &chart)?;
     }
     let drawn = input.judged.len().min(MOST_CHARTS) as u32;
+    // A page holds two charts side by side and two below each other; none is cut by the end of a page.
+    let pages = drawn.div_ceil(4);
+    sheet.set_print_scale(80);
+    let breaks: Vec<u32> = (1..pages).map(|page| 2 + page * 2 * ROWS_A_CHART).collect();
+    if !breaks.is_empty() {
+        sheet.set_page_breaks(&breaks)?;
+    }
     sheet.set_print_area(0, 0, 2 + drawn.div_ceil(2) * ROWS_A_CHART, 15)?;
     if input.judged.len() > MOST_CHARTS {
         sheet.write_with_format(
