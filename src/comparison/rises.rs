@@ -85,16 +85,18 @@ pub fn sort_counting(numbers: &mut Vec<f64>) -> u64 {
 fn merge(from: &[f64], middle: usize, to: &mut [f64]) -> u64 {
     let (first, second) = from.split_at(middle);
     let (mut i, mut j, mut falls) = (0, 0, 0);
-    for place in to.iter_mut() {
-        if j == second.len() || i < first.len() && first[i] <= second[j] {
-            *place = first[i];
-            i += 1;
-        } else {
-            *place = second[j];
-            j += 1;
-            falls += (first.len() - i) as u64;
-        }
+    // Which half comes next is as good as random, so it is computed rather than branched on.
+    while i < first.len() && j < second.len() {
+        let (a, b) = (first[i], second[j]);
+        let from_second = b < a;
+        to[i + j] = if from_second { b } else { a };
+        falls += u64::from(from_second) * (first.len() - i) as u64;
+        i += usize::from(!from_second);
+        j += usize::from(from_second);
     }
+    let place = i + j;
+    to[place..place + first.len() - i].copy_from_slice(&first[i..]);
+    to[place + first.len() - i..].copy_from_slice(&second[j..]);
     falls
 }
 

@@ -68,24 +68,29 @@ fn plus_uniforms(chances: Vec<f64>, before: usize, more: usize) -> Vec<f64> {
     half
 }
 
+/// Chances below this count as none: a tail so small is no longer told apart, and numbers that lose digits are slow.
+const LEAST_CHANCE: f64 = 1e-300;
+
 /// The mean over each window of `width` chances that ends at a place; before the first chance there is nothing.
 ///
 /// Each window is the end of one block of `width` chances and the start of the next, so nothing is ever subtracted.
 fn add_windows(chances: &[f64], width: usize, means: &mut Vec<f64>, to_end: &mut Vec<f64>) {
     means.clear();
+    means.resize(chances.len(), 0.0);
     to_end.clear();
     to_end.resize(width + 1, 0.0);
     let share = 1.0 / width as f64;
-    for block in chances.chunks(width) {
+    for (block, means) in chances.chunks(width).zip(means.chunks_mut(width)) {
         let mut from_start = 0.0;
-        for (chance, before) in block.iter().zip(&to_end[1..]) {
+        for ((mean, chance), before) in means.iter_mut().zip(block).zip(&to_end[1..]) {
             from_start += chance;
-            means.push((from_start + before) * share);
+            let value = (from_start + before) * share;
+            *mean = if value < LEAST_CHANCE { 0.0 } else { value };
         }
         let mut sum = 0.0;
-        for (place, chance) in block.iter().enumerate().rev() {
+        for (to_end, chance) in to_end.iter_mut().zip(block).rev() {
             sum += chance;
-            to_end[place] = sum;
+            *to_end = sum;
         }
     }
 }
