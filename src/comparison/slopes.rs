@@ -80,8 +80,8 @@ impl Slopes {
         if self.pairs <= FEW_PAIRS {
             let mut all = Vec::with_capacity(self.pairs as usize);
             self.each_between(f64::NEG_INFINITY, f64::INFINITY, &mut |slope| all.push(slope));
-            all.sort_unstable_by(f64::total_cmp);
-            return ranks.iter().map(|&rank| outside(rank).unwrap_or_else(|| all[rank as usize - 1])).collect();
+            let mut select = |rank: u64| *all.select_nth_unstable_by(rank as usize - 1, f64::total_cmp).1;
+            return ranks.iter().map(|&rank| outside(rank).unwrap_or_else(|| select(rank))).collect();
         }
         let mut found: Vec<f64> = Vec::with_capacity(ranks.len());
         for (place, &rank) in ranks.iter().enumerate() {
