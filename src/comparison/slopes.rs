@@ -199,7 +199,7 @@ impl Slopes {
     }
 
     /// Hands over every point together with the points to which its slope lies between two cuts.
-    fn each_run_between(&self, low: f64, high: f64, found: &mut dyn FnMut(&[Point], usize, &[Keyed])) {
+    fn each_run_between(&self, low: f64, high: f64, found: &mut Runs) {
         for block in &self.blocks {
             if low == f64::NEG_INFINITY && high == f64::INFINITY {
                 let all: Vec<Keyed> = (0..block.len() as u32).map(|index| Keyed { key: 0.0, index }).collect();
@@ -223,6 +223,9 @@ impl Slopes {
         }
     }
 }
+
+/// Takes the points of a block, the place of one of them, and those to which its slope is wanted.
+type Runs<'a> = dyn FnMut(&[Point], usize, &[Keyed]) + 'a;
 
 /// A point of a block, and by what it is sorted.
 #[derive(Clone, Copy)]

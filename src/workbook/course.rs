@@ -11,10 +11,21 @@ use crate::reading::Series;
 /// The course of an indicator.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Course {
-    /// The slope, its limits where these readings set any, and its unit, such as `min a year`.
-    pub slope: Option<(f64, Option<(f64, f64)>, String)>,
+    /// How fast it moves.
+    pub pace: Option<Pace>,
     /// The label of the first moment of the new level.
     pub since: Option<String>,
+}
+
+/// A slope with its limits.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Pace {
+    /// The median slope.
+    pub slope: f64,
+    /// Its limits, where these readings set any.
+    pub limits: Option<(f64, f64)>,
+    /// Its unit, such as `min a year`.
+    pub unit: String,
 }
 
 /// Up to so many readings the course is followed; longer series would keep a person waiting.
@@ -29,10 +40,11 @@ pub fn course(series: &Series, finding: &Finding) -> Course {
         return Course::default();
     }
     let limits_by = if series.len() > MOST_WITH_EXACT_LIMITS { "normal" } else { "best" };
-    let slope = judged("theil-sen", &[("p_by", "normal"), ("limits_by", limits_by)], series).and_then(|outcome| {
+    let pace = judged("theil-sen", &[("p_by", "normal"), ("limits_by", limits_by)], series).and_then(|outcome| {
         let number = |key| number(&outcome, key);
         let unit = outcome.facts.iter().find(|fact| fact.key == "slope").and_then(|fact| fact.unit.clone());
-        Some((number("slope")?, number("slope_low").zip(number("slope_high")), unit.unwrap_or_default()))
+        let limits = number("slope_low").zip(number("slope_high"));
+        Some(Pace { slope: number("slope")?, limits, unit: unit.unwrap_or_default() })
     });
     let shown = finding.conclusion.word.shows_something();
     let since = shown.then(|| judged("pettitt", &[("p_by", "approximation")], series)).flatten();
@@ -40,7 +52,7 @@ pub fn course(series: &Series, finding: &Finding) -> Course {
         Some(Datum::Text(label)) => Some(label.clone()),
         _ => None,
     });
-    Course { slope, since }
+    Course { pace, since }
 }
 
 fn judged(key: &str, parameters: &[(&str, &str)], series: &Series) -> Option<Outcome> {

@@ -7,7 +7,7 @@ use super::statistics::Family;
 use super::{Error, Input, PROGRAM, fitting, page, wording};
 use crate::finding::Word;
 use crate::finding::sentence::{number, percent};
-use crate::workbook::course::{Course, course};
+use crate::workbook::course::{Course, Pace, course};
 use crate::workbook::indicator::{Judged, Rows};
 use crate::workbook::reference::quote_sheet;
 
@@ -155,10 +155,10 @@ fn write_row(
 
 /// The slope with its limits and unit, such as `0.041 (0.022 to 0.060) min a year`.
 fn how_fast(course: &Course) -> String {
-    match &course.slope {
+    match &course.pace {
         None => String::new(),
-        Some((slope, None, unit)) => format!("{} {unit}", number(*slope)),
-        Some((slope, Some((low, high)), unit)) => {
+        Some(Pace { slope, limits: None, unit }) => format!("{} {unit}", number(*slope)),
+        Some(Pace { slope, limits: Some((low, high)), unit }) => {
             format!("{} ({} {} {}) {unit}", number(*slope), number(*low), wording::TO, number(*high))
         }
     }
