@@ -88,6 +88,8 @@ pub struct Treated {
     pub readings: usize,
     /// S, which differs from that of the readings as they stand only after prewhitening.
     pub s: i64,
+    /// The variance of S that the treatment comes to, where it has one.
+    pub variance: Option<f64>,
 }
 
 /// Judges S under a treatment.
@@ -95,7 +97,14 @@ pub struct Treated {
 /// # Errors
 /// The treatment does not apply to these readings, or an exact p cannot be counted.
 pub fn judge(series: &Series, ordered: &Ordered, score: &Score, treatment: &Treatment) -> Result<Treated, Refusal> {
-    let plain = |attained, facts, cautions| Treated { attained, facts, cautions, readings: score.readings(), s: score.s() };
+    let plain = |attained, facts, cautions| Treated {
+        attained,
+        facts,
+        cautions,
+        readings: score.readings(),
+        s: score.s(),
+        variance: None,
+    };
     let n = score.readings();
     if treatment.dependence != Dependence::Ignore {
         check(series, ordered, score)?;
@@ -130,7 +139,7 @@ pub fn judge(series: &Series, ordered: &Ordered, score: &Score, treatment: &Trea
                 Fact::new("correction", "Factor by which dependence multiplies the variance", factor),
                 Fact::new("variance_corrected", "Variance of S, corrected for dependence", variance),
             ];
-            Ok(plain(attained, facts, Vec::new()))
+            Ok(Treated { variance: Some(variance), ..plain(attained, facts, Vec::new()) })
         }
         Dependence::Prewhiten => prewhitened(series, ordered, score, treatment),
         Dependence::Shuffle => shuffled(ordered, score, treatment, &plain),
@@ -225,7 +234,7 @@ fn prewhitened(series: &Series, ordered: &Ordered, score: &Score, treatment: &Tr
             "no, the autocorrelation may well be chance",
         ));
         let attained = score.attained(treatment.p_by, treatment.continuity)?;
-        return Ok(Treated { attained, facts, cautions: Vec::new(), readings: score.readings(), s: score.s() });
+        return Ok(Treated { attained, facts, cautions: Vec::new(), readings: score.readings(), s: score.s(), variance: None });
     }
     let values: Vec<Value> =
         (1..left.len()).map(|index| Value::Number(left[index] - r1 * left[index - 1] + slope * times[index])).collect();
@@ -244,6 +253,7 @@ fn prewhitened(series: &Series, ordered: &Ordered, score: &Score, treatment: &Tr
         cautions: vec!["S, p and the count of readings are those of the prewhitened readings; the pairs are those of the readings as they stand.".into()],
         readings: whitened.readings(),
         s: whitened.s(),
+        variance: None,
     })
 }
 

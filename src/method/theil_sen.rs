@@ -7,7 +7,8 @@
 //! # Choices
 //! `slope_by=repeated` takes, for each reading, the median of its slopes to all others, and then the median of those medians
 //! (Siegel): up to half of the readings may be wild. It has no limits of its own. `limits_by`, `per` and `confidence`: see
-//! [`super::slope`].
+//! [`super::slope`]. `dependence` says what is done in p about readings that remember their predecessors; with `variance` the
+//! limits of the slope allow for them too. See [`super::dependence`].
 //!
 //! # Effect
 //! The slope itself, with a line through the readings: `intercept` makes as many readings lie above the line as below;
@@ -20,10 +21,11 @@
 //! H. Theil (1950) and P. K. Sen (1968), as cited for the slope. A. F. Siegel (1982), Robust regression using repeated medians,
 //! *Biometrika* 69, 242-244.
 
-use super::declaration::Proportion;
+use super::declaration::{Count, Proportion};
+use super::dependence::{self, Dependence, Treatment};
 use super::kendall::{EXACT, Ordered, Score};
 use super::question::PBy;
-use super::slope::{self, Axis, Estimate, LimitsBy, Per, number, points};
+use super::slope::{self, Axis, Estimate, LimitsBy, Per, Places, number, points};
 use super::{
     Card, Claim, Column, Datum, Direction, Evidence, Fact, Method, Outcome, Question, Refusal, ScaleNeeded, Source, Statistic,
     Table,
@@ -56,6 +58,18 @@ crate::parameters! {
         p_by: PBy = PBy::Best,
         /// Whether the normal approximation is corrected for continuity.
         continuity: bool = true,
+        /// What is done about readings that remember their predecessors: ignore, variance, prewhiten or shuffle.
+        dependence: Dependence = Dependence::Ignore,
+        /// For dependence=variance: the longest lag that counts; 0 for all.
+        lags: Count<0, 100_000> = Count(0),
+        /// For dependence=variance: whether lags count whose autocorrelation may well be chance.
+        all_lags: bool = false,
+        /// For dependence=shuffle: readings in a block; 0 for twice the cube root of their number.
+        block: Count<0, 100_000> = Count(0),
+        /// For dependence=shuffle: how many random orders are drawn.
+        draws: Count<100, 1_000_000> = Count(5_000),
+        /// For dependence=shuffle: the seed; the same seed gives the same orders.
+        seed: Count<0, 4_294_967_295> = Count(1),
     }
 }
 
@@ -88,10 +102,7 @@ impl Method for TheilSen {
         ties: "Equal readings have slope 0 between them; readings at one moment have no slope. The exact limits are those for readings that all differ, and with ties hold at least the stated confidence.",
         missing: "Gaps stay gaps in time. In a slope a limit such as <0.5 counts as 0.5; in p it is compared where the order is certain.",
         cost: "n log n, plus the counting within the exact range; repeated medians: n squared",
-        fits_better: &[
-            ("mann-kendall", "the readings are grades, or neighbours resemble each other"),
-            ("cox-stuart", "the evidence is to be shown in pairs"),
-        ],
+        fits_better: &[("mann-kendall", "the readings are grades"), ("cox-stuart", "the evidence is to be shown in pairs")],
         sources: &[
             slope::SOURCES[0],
             slope::SOURCES[1],
@@ -124,13 +135,18 @@ impl Method for TheilSen {
         if score.rises + score.falls == 0 {
             return Err(Refusal::AllTied { compared: score.pairs() as usize });
         }
-        let attained = score.attained(parameters.p_by, parameters.continuity)?;
-        let (p, smallest) = question.judge(&attained);
+        let treated = dependence::judge(series, &ordered, &score, &parameters.treatment())?;
+        let (p, smallest) = question.judge(&treated.attained);
         let estimate = match parameters.slope_by {
             SlopeBy::Pairs => {
                 let Parameters { limits_by, confidence, .. } = parameters;
-                let places = slope::places(&score, slopes.count(), *limits_by, confidence.0)?;
-                Estimate::of(&slopes, places)
+                let interpolated = *limits_by == LimitsBy::Interpolated;
+                if let Some(variance) = treated.variance {
+                    Estimate::of(&slopes, Some(Places::normal(slopes.count(), variance, confidence.0, interpolated)))
+                } else {
+                    let places = slope::places(&score, slopes.count(), *limits_by, confidence.0)?;
+                    Estimate::of(&slopes, places)
+                }
             }
             SlopeBy::Repeated => Estimate { slope: repeated_median(&points)?, low: None, high: None },
         };
@@ -152,8 +168,10 @@ impl Method for TheilSen {
             Fact::new("s", "S: rises less falls", score.s()),
             Fact::new("tau", "Kendall's tau-b", score.tau_b()),
         ]);
-        facts.extend(question.p_facts(&attained));
-        let mut cautions: Vec<String> = score.caution_on_ties().into_iter().collect();
+        facts.extend(treated.facts);
+        facts.extend(question.p_facts(&treated.attained));
+        let mut cautions = treated.cautions;
+        cautions.extend(score.caution_on_ties());
         if ordered.values.iter().any(|value| value.is_censored()) {
             cautions
                 .push("In the slope, a limit such as <0.5 counts as 0.5; with many of them it is too flat or too steep.".into());
@@ -161,9 +179,9 @@ impl Method for TheilSen {
         Ok(Outcome {
             statistic: Statistic { name: "slope", value: slope },
             p,
-            direction: Direction::of(score.s() as f64),
+            direction: Direction::of(treated.s as f64),
             smallest_p: Some(smallest),
-            readings_used: score.readings(),
+            readings_used: treated.readings,
             facts,
             evidence: (points.len() <= MOST_LISTED)
                 .then(|| Evidence::Table(listed(series, &ordered, &points, slope)))
@@ -171,6 +189,21 @@ impl Method for TheilSen {
                 .collect(),
             cautions,
         })
+    }
+}
+
+impl Parameters {
+    fn treatment(&self) -> Treatment {
+        Treatment {
+            dependence: self.dependence,
+            lags: self.lags.0,
+            all_lags: self.all_lags,
+            block: self.block.0,
+            draws: self.draws.0,
+            seed: self.seed.0,
+            p_by: self.p_by,
+            continuity: self.continuity,
+        }
     }
 }
 

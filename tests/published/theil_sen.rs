@@ -95,4 +95,24 @@ fn repeated_medians() {
     close(slope, &json!(365.2425 / 365.0), 1e-12, "a year of 365.2425 days");
 }
 
+/// With the variance corrected for dependence, p is that of the Mann-Kendall test so treated, and the limits stand at the normal
+/// places of that variance: wider, since neighbouring flows of the Nile resemble each other.
+#[test]
+fn limits_allow_for_dependence() {
+    let nile = crate::reference::file("datasets.json")["Nile"]["values"].clone();
+    let ask_for = |method: &str| ask(method, json!({ "readings": nile, "dependence": "variance" })).1.unwrap();
+    let (slope, kendall) = (ask_for("theil-sen"), ask_for("mann-kendall"));
+    assert_eq!(slope.p, kendall.p);
+    let (low, high) = limits(&nile, json!({ "limits_by": "normal" }));
+    assert!(fact(&slope, "slope_low") < low && fact(&slope, "slope_high") > high);
+    let reach = 1.959_963_984_540_054 * fact(&kendall, "variance_corrected").sqrt();
+    let values: Vec<f64> = nile.as_array().unwrap().iter().map(|x| x.as_f64().unwrap()).collect();
+    let pairs = (0..values.len()).flat_map(|i| (i + 1..values.len()).map(move |j| (i, j)));
+    let mut slopes: Vec<f64> = pairs.map(|(i, j)| (values[j] - values[i]) / (j - i) as f64).collect();
+    slopes.sort_by(f64::total_cmp);
+    let place = ((slopes.len() as f64 - reach) / 2.0).floor() as usize;
+    assert_eq!(fact(&slope, "slope_low"), slopes[place - 1]);
+    assert_eq!(fact(&slope, "slope_high"), slopes[slopes.len() - place]);
+}
+
 include!("../reference/siegel.rs");
