@@ -23,6 +23,7 @@ pub mod rank_steps;
 pub mod rank_walk;
 pub mod rises;
 pub mod runs_of_two;
+pub mod score_path;
 pub mod score_total;
 pub mod signed_weights;
 pub mod strip;

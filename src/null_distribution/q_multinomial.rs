@@ -47,22 +47,32 @@ pub fn rises_less_falls(sizes: &[usize]) -> Lattice {
     Lattice::new(-pairs, 2, rises)
 }
 
-/// The chances of each sum of a symmetric count and an independent uniform one from 0 to `width` - 1.
-///
-/// Each window is the end of one block of `width` chances and the start of the next, so nothing is ever subtracted. Half
-/// of the sums suffice, the others mirror them. What is too small to be kept to full precision is dropped, since
-/// arithmetic with such numbers is very slow.
+/// The chances of each sum of a symmetric count and an independent uniform one from 0 to `width` - 1. Half of the sums
+/// suffice, the others mirror them.
 fn plus_uniform(chances: &[f64], width: usize) -> Vec<f64> {
     let length = chances.len() + width - 1;
     let half = length.div_ceil(2);
+    let mut sums = first_sums_with_uniform(chances, width, half);
+    sums.resize(length, 0.0);
+    for index in half..length {
+        sums[index] = sums[length - 1 - index];
+    }
+    sums
+}
+
+/// The chances of the sums from 0 to `sums` - 1 of a count and an independent uniform one from 0 to `width` - 1.
+///
+/// Each window is the end of one block of `width` chances and the start of the next, so nothing is ever subtracted. What
+/// is too small to be kept to full precision is dropped, since arithmetic with such numbers is very slow.
+pub fn first_sums_with_uniform(chances: &[f64], width: usize, sums: usize) -> Vec<f64> {
     let share = 1.0 / width as f64;
     let at = |index: usize| chances.get(index).copied().unwrap_or(0.0);
     let kept = |chance: f64| if chance < f64::MIN_POSITIVE { 0.0 } else { chance };
-    let mut sums = vec![0.0; length];
+    let mut first = vec![0.0; sums];
     let mut to_end = vec![0.0; width + 1];
-    for start in (0..half).step_by(width) {
+    for start in (0..sums).step_by(width) {
         let mut from_start = 0.0;
-        for (index, sum) in sums[start..half.min(start + width)].iter_mut().enumerate() {
+        for (index, sum) in first[start..sums.min(start + width)].iter_mut().enumerate() {
             from_start += at(start + index);
             *sum = kept((to_end[index + 1] + from_start) * share);
         }
@@ -70,10 +80,7 @@ fn plus_uniform(chances: &[f64], width: usize) -> Vec<f64> {
             to_end[index] = to_end[index + 1] + at(start + index);
         }
     }
-    for index in half..length {
-        sums[index] = sums[length - 1 - index];
-    }
-    sums
+    first
 }
 
 /// The chance of each number of rises from a group of `first` to a group of `second` readings.
