@@ -7,6 +7,7 @@ mod arrangements;
 pub mod attained;
 pub mod beta;
 pub mod binomial;
+pub mod capital;
 pub mod chi_square;
 pub mod crossing;
 pub mod draws;
