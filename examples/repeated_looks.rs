@@ -66,7 +66,9 @@ fn mann_kendall(readings: &[f64]) -> bool {
 
 /// The earlier readings that each reading exceeds, less those that exceed it; ties are drawn apart.
 fn parts(readings: &[f64]) -> Vec<i64> {
-    Successive::of(&Series::of_numbers(readings), readings.len(), Ties::Seeded, 1).map(|readings| readings.rising).unwrap_or_default()
+    Successive::of(&Series::of_numbers(readings), readings.len(), Ties::Seeded, 1)
+        .map(|readings| readings.rising)
+        .unwrap_or_default()
 }
 
 fn planned(boundary: &Boundary, readings: &[f64]) -> Option<usize> {
@@ -144,7 +146,9 @@ fn without_a_trend(count: usize) {
 
 fn with_a_drift(count: usize) {
     const WEEKS: usize = 104;
-    println!("\nClaims of a rise by week {WEEKS}, in per cent of {count} normal series that drift; in brackets the median week of the first claim.\n");
+    println!(
+        "\nClaims of a rise by week {WEEKS}, in per cent of {count} normal series that drift; in brackets the median week of the first claim.\n"
+    );
     let steady = |drift: f64| move |week: usize| drift * week as f64;
     let series: Vec<(String, Vec<Vec<f64>>)> = [0.005, 0.01, 0.02, 0.03]
         .into_iter()

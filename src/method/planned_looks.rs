@@ -58,9 +58,7 @@ impl Spending {
         match (self, sides) {
             (_, Sides::Two) => 2.0 * self.allowance(risk / 2.0, information, Sides::One),
             _ if information >= 1.0 => risk,
-            (Spending::OBrienFleming, _) => {
-                2.0 * normal::upper_tail(normal::upper_quantile(risk / 2.0) / information.sqrt())
-            }
+            (Spending::OBrienFleming, _) => 2.0 * normal::upper_tail(normal::upper_quantile(risk / 2.0) / information.sqrt()),
             (Spending::Pocock, _) => risk * ((std::f64::consts::E - 1.0) * information).ln_1p(),
         }
     }
@@ -319,7 +317,10 @@ impl Sought<'_> {
         let latest = looks[made - 1].readings;
         let next = looks.get(made)?;
         (have > latest).then(|| {
-            format!("The plan has no look between readings {latest} and {}; what stands here is as of reading {latest}.", next.readings)
+            format!(
+                "The plan has no look between readings {latest} and {}; what stands here is as of reading {latest}.",
+                next.readings
+            )
         })
     }
 

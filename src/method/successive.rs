@@ -2,8 +2,11 @@
 //!
 //! The newest of t readings exceeds some of the earlier ones. Without a trend, and if no two readings are equal, how many it
 //! exceeds is uniform on 0 to t - 1 and independent of all that went before; both tests rest on that alone. Equal
-//! readings are therefore put in an order by a seeded draw, one for each place of the series, so that a later look
-//! breaks earlier ties as before; or they count against the direction sought, which is safe and blunt.
+//! readings are therefore put in an order by a seeded draw, or they count against the direction sought, which is safe and blunt.
+//!
+//! The draw for a reading depends on the seed and on how this reading and the earlier ones stand to each other, and on nothing
+//! else. So a later look breaks earlier ties as before, another unit changes nothing, and different series with one seed get
+//! different draws: were the draws the same for all, a seed that happens to draw a rise would do so in all of them.
 
 use super::{Fact, Refusal};
 use crate::comparison::Order;
@@ -25,7 +28,8 @@ crate::choices! {
 pub const TIES: &str = "A seeded draw puts equal readings in an order (ties=seeded), which keeps the risk exact; or they count against the direction sought (ties=against), which is safe and blunt.";
 
 /// What becomes of gaps and limits, for the cards.
-pub const MISSING: &str = "Gaps are closed up. Limits such as <0.5 tie where their order is not certain; limits at several levels need ties=against.";
+pub const MISSING: &str =
+    "Gaps are closed up. Limits such as <0.5 tie where their order is not certain; limits at several levels need ties=against.";
 
 /// Readings as they came, one after another.
 pub struct Successive {
@@ -55,13 +59,11 @@ impl Successive {
         }
         let part = |number: usize, exceeded: u64| 2 * exceeded as i64 - number as i64;
         let (rising, falling) = match ties {
-            Ties::Against => counts
-                .iter()
-                .enumerate()
-                .map(|(number, &(lower, higher))| (part(number, lower), -part(number, higher)))
-                .unzip(),
+            Ties::Against => {
+                counts.iter().enumerate().map(|(number, &(lower, higher))| (part(number, lower), -part(number, higher))).unzip()
+            }
             Ties::Seeded => {
-                let exceeded = broken(&values, &indices, seed)?;
+                let exceeded = broken(&values, &counts, seed)?;
                 let parts: Vec<i64> = exceeded.into_iter().enumerate().map(|(number, exceeded)| part(number, exceeded)).collect();
                 (parts.clone(), parts)
             }
@@ -77,31 +79,38 @@ impl Successive {
     /// What to bear in mind about equal readings, if there are any.
     pub fn caution(&self, ties: Ties) -> Option<String> {
         let how = match ties {
-            Ties::Seeded => "a seeded draw put them in an order. Another seed gives another p, so the seed is declared before looking and kept",
+            Ties::Seeded => {
+                "a seeded draw put them in an order. Another seed gives another p, so the seed is declared before looking and kept"
+            }
             Ties::Against => "they count against the direction sought, so that p is an upper limit",
         };
         (self.tied_pairs > 0).then(|| format!("{} pairs of readings are equal; {how}.", self.tied_pairs))
     }
 }
 
-/// For each reading, how many earlier ones it exceeds when a seeded draw puts equal ones in an order.
-fn broken(values: &[Value], indices: &[usize], seed: u32) -> Result<Vec<u64>, Refusal> {
+/// For each reading, how many earlier ones it exceeds when a seeded draw puts equal ones in an order; `counts` says how many
+/// earlier ones are lower and higher.
+fn broken(values: &[Value], counts: &[(u64, u64)], seed: u32) -> Result<Vec<u64>, Refusal> {
     let Some(order) = Order::of_values(values) else {
         return Err(Refusal::Because(
             "limits at several levels leave no order in which equal readings could be drawn apart; ask for ties=against".into(),
         ));
     };
-    let mut draws = Draws::seeded(seed.into());
-    let drawn: Vec<f64> = (0..indices.last().map_or(0, |last| last + 1)).map(|_| draws.unit()).collect();
+    let mut state = u64::from(seed);
+    let draw = |&(lower, higher): &(u64, u64)| {
+        let mut draws = Draws::seeded(state ^ (lower << 32 | higher));
+        state = draws.below(u64::MAX);
+        draws.unit()
+    };
+    let drawn: Vec<f64> = counts.iter().map(draw).collect();
     let mut sorted: Vec<usize> = (0..values.len()).collect();
-    let key = |number: usize| (order.places[number], drawn[indices[number]]);
-    sorted.sort_by(|&a, &b| key(a).0.cmp(&key(b).0).then(key(a).1.total_cmp(&key(b).1)));
+    sorted.sort_by(|&a, &b| order.places[a].cmp(&order.places[b]).then(drawn[a].total_cmp(&drawn[b])));
     let mut places = vec![0; values.len()];
     sorted.iter().enumerate().for_each(|(place, &number)| places[number] = place);
-    let mut counts = RunningCounts::new(values.len());
+    let mut earlier = RunningCounts::new(values.len());
     let exceeded = places.iter().map(|&place| {
-        let below = counts.below(place);
-        counts.add(place);
+        let below = earlier.below(place);
+        earlier.add(place);
         below
     });
     Ok(exceeded.collect())

@@ -9,7 +9,7 @@
 //! # Choices
 //! `stakes`: the capital is the mean of several bettors', one for each stake. Small stakes find slow trends, large ones steep
 //! trends soon. `starts`: with `first` all of them bet from the second reading on; with `spread` a share of 1/(k(k + 1)) begins
-//! after reading k, which finds a trend that begins late and costs some of the power against one that is there from the start.
+//! after reading k, which finds a trend that begins late far sooner and one that is there from the start about as soon.
 //!
 //! # What is sought
 //! With `seek=rising` the bets are on rises, with `seek=falling` on falls, with `seek=either` half the capital is bet on each.
@@ -47,10 +47,10 @@ crate::choices! {
 crate::parameters! {
     /// What a watch takes beyond readings, seek and risk.
     pub struct Parameters {
-        /// The shares of the capital that are staked, each above 0 and below 1; by default 0.1, 0.2, 0.3, 0.4 and 0.5.
+        /// The shares of the capital that are staked, each above 0 and below 1; by default 0.2, 0.3, 0.4, 0.5 and 0.6.
         stakes: List = List::default(),
         /// When the bettors begin: first or spread.
-        starts: Starts = Starts::First,
+        starts: Starts = Starts::Spread,
         /// What becomes of equal readings.
         ties: Ties = Ties::Seeded,
         /// For ties=seeded: the seed; the same seed breaks the same ties at every look.
@@ -59,7 +59,7 @@ crate::parameters! {
 }
 
 /// The stakes where none are sent.
-pub const STAKES: [f64; 5] = [0.1, 0.2, 0.3, 0.4, 0.5];
+pub const STAKES: [f64; 5] = [0.2, 0.3, 0.4, 0.5, 0.6];
 
 /// How p is got.
 const VILLE: By = By::Approximation("upper limit by Ville's inequality");
@@ -256,5 +256,9 @@ fn table(series: &Series, readings: &Successive, capitals: &Capitals, seek: Seek
             one_over(most).into(),
         ]
     };
-    Table { caption: "The capital after each reading".into(), rows: readings.indices.iter().enumerate().map(row).collect(), columns }
+    Table {
+        caption: "The capital after each reading".into(),
+        rows: readings.indices.iter().enumerate().map(row).collect(),
+        columns,
+    }
 }

@@ -220,9 +220,7 @@ mod tests {
                         assert!(look.spent <= risk * look.information * (1.0 + 1e-12));
                     }
                     for reach in [Reach { score: 1, least: 1 }, Reach { score: 5, least: 7 }, Reach { score: 9, least: 8 }] {
-                        let as_far = |path: &[i64]| {
-                            boundary.reach(&scores(path)).is_some_and(|other| !reach.exceeds(other))
-                        };
+                        let as_far = |path: &[i64]| boundary.reach(&scores(path)).is_some_and(|other| !reach.exceeds(other));
                         let expected = share(n, as_far);
                         assert!((boundary.chance(reach) - expected).abs() < 1e-13, "{n} {sides:?} {reach:?}: {expected}");
                     }

@@ -69,10 +69,7 @@ impl Input {
             }
             ("planned-looks", _) => {
                 let horizon = n.clamp(2, 60).to_string();
-                Input {
-                    settings: vec![("horizon", horizon), ("first_look", "2".into())],
-                    ..Input::readings(random, n, heavy)
-                }
+                Input { settings: vec![("horizon", horizon), ("first_look", "2".into())], ..Input::readings(random, n, heavy) }
             }
             ("page", _) => {
                 let moments = if n < 8 { 2 } else { 4 };
