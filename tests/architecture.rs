@@ -36,7 +36,7 @@ const OWNERS: &[(&str, &str)] = &[
 ];
 
 /// Files of `method/` that are not tests but what tests share.
-const SHARED_BY_METHODS: [&str; 14] = [
+const SHARED_BY_METHODS: [&str; 15] = [
     "mod",
     "blocked_kendall",
     "change",
@@ -50,6 +50,7 @@ const SHARED_BY_METHODS: [&str; 14] = [
     "scores_covariance",
     "screen",
     "slope",
+    "successive",
     "turning",
 ];
 

@@ -117,6 +117,37 @@ pub fn later_higher(order: &Order) -> Vec<u64> {
     higher
 }
 
+/// For each reading, how many readings of earlier moments are certainly lower and how many are certainly higher;
+/// `moment_sizes` says how many readings each moment has.
+pub fn earlier_lower_and_higher(values: &[Value], moment_sizes: &[usize]) -> Vec<(u64, u64)> {
+    let mut parts = Vec::with_capacity(values.len());
+    let mut start = 0;
+    match Order::of_values(values) {
+        Some(order) => {
+            let mut counts = RunningCounts::new(order.sizes.len());
+            for &size in moment_sizes {
+                for &place in &order.places[start..start + size] {
+                    parts.push((counts.below(place), start as u64 - counts.below(place + 1)));
+                }
+                order.places[start..start + size].iter().for_each(|&place| counts.add(place));
+                start += size;
+            }
+        }
+        None => {
+            for &size in moment_sizes {
+                for value in &values[start..start + size] {
+                    let count = |order| {
+                        values[..start].iter().filter(|earlier: &&Value| earlier.compare(*value) == Some(order)).count() as u64
+                    };
+                    parts.push((count(std::cmp::Ordering::Less), count(std::cmp::Ordering::Greater)));
+                }
+                start += size;
+            }
+        }
+    }
+    parts
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

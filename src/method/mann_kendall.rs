@@ -34,8 +34,8 @@ use super::{
     Table,
 };
 use crate::comparison::Slopes;
-use crate::comparison::order::RunningCounts;
-use crate::reading::{Series, Value};
+use crate::comparison::order::earlier_lower_and_higher;
+use crate::reading::Series;
 
 crate::parameters! {
     /// What Mann and Kendall's test takes beyond readings, seek and risk.
@@ -195,7 +195,7 @@ fn listed(series: &Series, ordered: &Ordered) -> Table {
         Column { key: "earlier_higher", label: "Earlier readings that are higher" },
         Column { key: "part", label: "Its part in S" },
     ];
-    let parts = earlier(ordered);
+    let parts = earlier_lower_and_higher(&ordered.values, &ordered.moment_sizes);
     let row = |(&index, (lower, higher)): (&usize, (u64, u64))| -> Vec<Datum> {
         vec![
             (index + 1).into(),
@@ -211,35 +211,4 @@ fn listed(series: &Series, ordered: &Ordered) -> Table {
         rows: ordered.indices.iter().zip(parts).map(row).collect(),
         columns,
     }
-}
-
-/// For each reading, how many readings of earlier moments are lower and how many are higher.
-fn earlier(ordered: &Ordered) -> Vec<(u64, u64)> {
-    let Ordered { values, moment_sizes, .. } = ordered;
-    let mut parts = Vec::with_capacity(values.len());
-    let mut start = 0;
-    match crate::comparison::Order::of_values(values) {
-        Some(order) => {
-            let mut counts = RunningCounts::new(order.sizes.len());
-            for &size in moment_sizes {
-                for &place in &order.places[start..start + size] {
-                    parts.push((counts.below(place), start as u64 - counts.below(place + 1)));
-                }
-                order.places[start..start + size].iter().for_each(|&place| counts.add(place));
-                start += size;
-            }
-        }
-        None => {
-            for &size in moment_sizes {
-                for value in &values[start..start + size] {
-                    let count = |order| {
-                        values[..start].iter().filter(|earlier: &&Value| earlier.compare(*value) == Some(order)).count() as u64
-                    };
-                    parts.push((count(std::cmp::Ordering::Less), count(std::cmp::Ordering::Greater)));
-                }
-                start += size;
-            }
-        }
-    }
-    parts
 }

@@ -16,6 +16,7 @@ pub mod question;
 pub mod scores_covariance;
 pub mod screen;
 pub mod slope;
+pub mod successive;
 pub mod turning;
 
 pub mod buishand_range;
@@ -31,6 +32,7 @@ pub mod normal_homogeneity;
 pub mod page;
 pub mod partial_kendall;
 pub mod pettitt;
+pub mod planned_looks;
 pub mod poisson_trend;
 pub mod rank_von_neumann;
 pub mod regional_kendall;
@@ -41,6 +43,7 @@ pub mod seasonal_kendall;
 pub mod spearman;
 pub mod theil_sen;
 pub mod turning_points;
+pub mod watch;
 
 pub use outcome::{Column, Datum, Direction, Evidence, Fact, Outcome, Refusal, Statistic, Table};
 pub use question::{Question, Seek};
@@ -54,6 +57,8 @@ pub static METHODS: &[Registered] = &[
     Registered::new::<cox_stuart::CoxStuart>(),
     Registered::new::<mann_kendall::MannKendall>(),
     Registered::new::<theil_sen::TheilSen>(),
+    Registered::new::<planned_looks::PlannedLooks>(),
+    Registered::new::<watch::Watch>(),
     Registered::new::<seasonal_kendall::SeasonalKendall>(),
     Registered::new::<regional_kendall::RegionalKendall>(),
     Registered::new::<partial_kendall::PartialKendall>(),

@@ -68,8 +68,17 @@ fn plus_uniforms(chances: Vec<f64>, before: usize, more: usize) -> Vec<f64> {
     half
 }
 
-/// Chances below this count as none: a tail so small is no longer told apart, and numbers that lose digits are slow.
-const LEAST_CHANCE: f64 = 1e-300;
+/// The chances of the sums from 0 to `sums` - 1 of a count and an independent uniform one from 0 to `width` - 1.
+pub fn first_sums_with_uniform(chances: &[f64], width: usize, sums: usize) -> Vec<f64> {
+    let mut first = chances[..sums.min(chances.len())].to_vec();
+    first.resize(sums, 0.0);
+    let mut means = Vec::new();
+    add_windows(&first, width, &mut means, &mut Vec::new());
+    means
+}
+
+/// Chances below this count as none: they are not kept to full precision, and arithmetic with such numbers is very slow.
+const LEAST_CHANCE: f64 = f64::MIN_POSITIVE;
 
 /// The mean over each window of `width` chances that ends at a place; before the first chance there is nothing.
 ///

@@ -67,6 +67,10 @@ impl Input {
                 let covariate = (0..n).map(|_| random.whole(20) as f64).collect();
                 Input { beside: vec![("covariate", covariate)], ..Input::readings(random, n, heavy) }
             }
+            ("planned-looks", _) => {
+                let horizon = n.clamp(2, 60).to_string();
+                Input { settings: vec![("horizon", horizon), ("first_look", "2".into())], ..Input::readings(random, n, heavy) }
+            }
             ("page", _) => {
                 let moments = if n < 8 { 2 } else { 4 };
                 let blocks = n / moments;

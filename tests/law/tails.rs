@@ -8,8 +8,11 @@ use crate::inputs::{Input, Ties, both_tails, directions, fact, forms_of_p, same}
 use crate::random::Random;
 
 /// Tests whose two tails belong to two statistics, and why.
-const TWO_STATISTICS: [(&str, &str); 1] =
-    [("difference-signs", "rises and falls are counted by themselves, level steps are neither")];
+const TWO_STATISTICS: [(&str, &str); 3] = [
+    ("difference-signs", "rises and falls are counted by themselves, level steps are neither"),
+    ("planned-looks", "a path's highest and lowest reach are two statistics"),
+    ("watch", "bets on rises and bets on falls have each their own capital"),
+];
 
 /// Whether chances are known only within the error of a simulation.
 fn is_simulated(outcome: &Outcome) -> bool {

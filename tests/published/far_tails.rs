@@ -9,10 +9,11 @@ use serde_json::Value;
 use crate::reference::{ask, close, fact, file};
 
 /// Tests without an exact p, and why.
-const NEVER_EXACT: [(&str, &str); 3] = [
+const NEVER_EXACT: [(&str, &str); 4] = [
     ("buishand-range", "p by simulation or by a bound"),
     ("normal-homogeneity", "p by simulation or by a bound"),
     ("partial-kendall", "p by the normal approximation alone"),
+    ("watch", "p is an upper limit"),
 ];
 
 #[test]

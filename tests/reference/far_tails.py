@@ -195,4 +195,57 @@ for count, end in [(20, 64), (40, 256)]:
     tail = mp.gammainc(count, 0, statistic / 2, regularized=True)
     case("military-handbook", {"readings": readings, "end": end}, "p_rising", tail, "incomplete gamma function, 60 digits")
 
+def advanced(paths, readings, more):
+    """Paths by their number of rises, `more` readings after `readings`, counted in whole numbers."""
+    for newest in range(readings + 1, readings + more + 1):
+        sums = [0]
+        for count in paths:
+            sums.append(sums[-1] + count)
+        last = len(paths)
+        paths = [sums[min(k + 1, last)] - sums[max(k + 1 - newest, 0)] for k in range(last + newest - 1)]
+    return paths
+
+
+def crossing(looks, boundary):
+    """How many of the orders, as a share, have a path of S that is at or beyond the boundary at some look."""
+    paths, readings, crossed = [1], 1, Fraction(0)
+    for look, least in zip(looks, boundary):
+        paths, readings = advanced(paths, readings, look - readings), look
+        first = len(paths) if least is None else max(0, -(-(least + look * (look - 1) // 2) // 2))
+        crossed += Fraction(sum(paths[first:]), factorial(look))
+        paths = paths[:first]
+    return crossed
+
+
+def spending_boundary(looks, risk):
+    """The lowest boundary that spends no more than Lan and DeMets' function of Pocock's kind, one-sided."""
+    variance = lambda n: mpf(n * (n - 1) * (2 * n + 5)) / 18
+    boundary, paths, readings, spent = [], [1], 1, Fraction(0)
+    for look in looks:
+        paths, readings = advanced(paths, readings, look - readings), look
+        allowed = risk * mp.log(1 + (mp.e - 1) * variance(look) / variance(looks[-1]))
+        pairs, crossed, least = look * (look - 1) // 2, 0, None
+        for rises in range(pairs, pairs // 2, -1):
+            more = crossed + (paths[rises] if rises < len(paths) else 0)
+            tail = spent + Fraction(more, factorial(look))
+            if mpf(tail.numerator) / tail.denominator > allowed:
+                break
+            crossed, least = more, 2 * rises - pairs
+        boundary.append(least)
+        spent += Fraction(crossed, factorial(look))
+        if least is not None:
+            paths = paths[: (least + pairs) // 2]
+    return boundary
+
+
+for horizon, first, every, swaps in [(60, 60, 1, 2), (40, 10, 1, 3), (60, 12, 6, 0), (104, 10, 1, 5)]:
+    looks = sorted({*range(first, horizon + 1, every), horizon})
+    boundary = spending_boundary(looks, mpf(5) / 100)
+    readings = sorted_but(horizon, swaps)
+    signs = [sum((later > earlier) - (later < earlier) for earlier in readings[:k]) for k, later in enumerate(readings)]
+    reaches = [Fraction(sum(signs[:look]), least) for look, least in zip(looks, boundary) if least is not None]
+    as_far = [None if least is None else -int(-(max(reaches) * least) // 1) for least in boundary]
+    body = {"readings": readings, "horizon": horizon, "first_look": first, "every": every, "spending": "pocock"}
+    case("planned-looks", body, "p_rising", crossing(looks, as_far), "whole-number counts of paths, carried from look to look")
+
 print("[\n" + ",\n".join(json.dumps(case) for case in cases) + "\n]")
