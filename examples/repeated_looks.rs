@@ -189,7 +189,7 @@ fn with_a_drift(count: usize) {
 }
 
 fn main() {
-    let count = std::env::args().nth(1).and_then(|count| count.parse().ok()).unwrap_or(2_000);
+    let count = std::env::args().nth(1).and_then(|count| count.parse().ok()).unwrap_or(4_000);
     without_a_trend(count);
     with_a_drift(count);
 }

@@ -26,7 +26,7 @@ crate::choices! {
 }
 
 /// What becomes of equal readings, for the cards.
-pub const TIES: &str = "A seeded draw puts equal readings in an order (ties=seeded), which keeps the risk exact; or they count against the direction sought (ties=against), which is safe and blunt.";
+pub const TIES: &str = "A seeded draw tells equal readings apart (ties=seeded), which keeps the risk exact over all seeds; or they count against the direction sought (ties=against), which is safe and blunt.";
 
 /// What becomes of gaps and limits, for the cards.
 pub const MISSING: &str =
@@ -81,7 +81,7 @@ impl Successive {
     pub fn caution(&self, ties: Ties) -> Option<String> {
         let how = match ties {
             Ties::Seeded => {
-                "a seeded draw put them in an order. Another seed gives another p, so the seed is declared before looking and kept"
+                "a seeded draw told them apart. Another seed gives another p, so the seed is declared before looking and kept"
             }
             Ties::Against => "they count against the direction sought, so that p is an upper limit",
         };
