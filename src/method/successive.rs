@@ -9,7 +9,8 @@
 //! nothing, and different series with one seed get different draws: were the draws the same for all, a seed that happens to
 //! draw a rise would do so in all of them. Over all seeds the risk is exact.
 
-use super::{Fact, Refusal};
+use super::kendall::{Ordered, Score};
+use super::{Fact, Refusal, dependence};
 use crate::comparison::Order;
 use crate::comparison::order::earlier_lower_and_higher;
 use crate::null_distribution::draws::Draws;
@@ -77,8 +78,22 @@ impl Successive {
         Fact::new("tied_pairs", "Pairs of equal readings", self.tied_pairs)
     }
 
-    /// What to bear in mind about equal readings, if there are any.
-    pub fn caution(&self, ties: Ties) -> Option<String> {
+    /// What to bear in mind about equal readings and about readings that resemble their neighbours.
+    pub fn cautions(&self, series: &Series, ties: Ties) -> Vec<String> {
+        [self.caution_on_ties(ties), self.caution_on_dependence(series)].into_iter().flatten().collect()
+    }
+
+    fn caution_on_dependence(&self, series: &Series) -> Option<String> {
+        let ordered = Ordered::new(series, self.indices.clone());
+        let r1 = dependence::of_neighbours(series, &ordered, &Score::of(&ordered)).ok().flatten()?;
+        dependence::caution(
+            r1,
+            self.indices.len(),
+            "repeated looks do not allow for it, but readings further apart may be free of it",
+        )
+    }
+
+    fn caution_on_ties(&self, ties: Ties) -> Option<String> {
         let how = match ties {
             Ties::Seeded => {
                 "a seeded draw told them apart. Another seed gives another p, so the seed is declared before looking and kept"
