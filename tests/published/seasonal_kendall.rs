@@ -106,7 +106,7 @@ fn partial_test_by_hand() {
     let outcome = ask("partial-kendall", json!({ "readings": [10, 30, 20, 50, 40], "covariate": [2, 1, 3, 5, 4] })).1.unwrap();
     close(fact(&outcome, "covariance"), &json!((6.0 + 4.0 * 52.0 - 180.0) / 3.0), 1e-13, "covariance");
     // S = 8 - 2 = 6, S' = 8 - 2 = 6; both variances are 5 * 4 * 15 / 18.
-    let variance: f64 = 300.0 / 18.0;
+    let variance = 300.0_f64 / 18.0;
     let shared = 34.0 / 3.0;
     let z = (6.0 - shared / variance * 6.0) / (variance - shared * shared / variance).sqrt();
     close(outcome.statistic.value, &json!(z), 1e-12, "z");
