@@ -25,12 +25,14 @@ enum Noise {
     HeavyTailed,
     /// Five grades, the middle one in 40 % of the weeks, its neighbours in 20 % each, the outer ones in 10 % each.
     Grades,
+    /// Normal readings that remember their predecessors: autocorrelation 0.3.
+    Remembering,
 }
 
 impl Noise {
     fn draw(self, draws: &mut Draws) -> f64 {
         match self {
-            Noise::Normal => draws.normal(),
+            Noise::Normal | Noise::Remembering => draws.normal(),
             Noise::HeavyTailed => draws.normal() / (-(1.0 - draws.unit()).ln()).sqrt(),
             Noise::Grades => {
                 let share = draws.unit();
@@ -120,12 +122,27 @@ fn claims(procedure: &Procedure, series: &[Vec<f64>]) -> (f64, Option<usize>) {
 
 fn simulate(noise: Noise, seed: u64, count: usize, readings: usize, drift: impl Fn(usize) -> f64) -> Vec<Vec<f64>> {
     let mut draws = Draws::seeded(seed);
-    (0..count).map(|_| (0..readings).map(|week| noise.draw(&mut draws) + drift(week)).collect()).collect()
+    let memory: f64 = if matches!(noise, Noise::Remembering) { 0.3 } else { 0.0 };
+    let mut one = || {
+        let mut before = noise.draw(&mut draws);
+        let reading = |week: usize| {
+            let reading = before + drift(week);
+            before = memory * before + (1.0 - memory * memory).sqrt() * noise.draw(&mut draws);
+            reading
+        };
+        (0..readings).map(reading).collect()
+    };
+    (0..count).map(|_| one()).collect()
 }
 
 fn without_a_trend(count: usize) {
     println!("Claims of a rise at any look, in per cent of {count} series without a trend; risk 5 %.\n");
-    let kinds = [("normal", Noise::Normal), ("heavy-tailed", Noise::HeavyTailed), ("five grades", Noise::Grades)];
+    let kinds = [
+        ("normal", Noise::Normal),
+        ("heavy-tailed", Noise::HeavyTailed),
+        ("five grades", Noise::Grades),
+        ("autocorrelated", Noise::Remembering),
+    ];
     let horizons = [104, 260];
     let headings: Vec<String> =
         horizons.iter().flat_map(|weeks| kinds.map(|(name, _)| format!("{weeks} weeks, {name}"))).collect();
@@ -172,7 +189,7 @@ fn with_a_drift(count: usize) {
 }
 
 fn main() {
-    let count = std::env::args().nth(1).and_then(|count| count.parse().ok()).unwrap_or(2_000);
+    let count = std::env::args().nth(1).and_then(|count| count.parse().ok()).unwrap_or(4_000);
     without_a_trend(count);
     with_a_drift(count);
 }

@@ -28,6 +28,9 @@ pub fn arguments(method: &Registered) -> Value {
     if method.parameters.iter().any(|parameter| parameter.name == "covariate") {
         sent["covariate"] = json!([31, 30, 33, 34, 31, 36, 35, 33, 37, 34, 38, 36]);
     }
+    if method.parameters.iter().any(|parameter| parameter.name == "horizon") {
+        sent["horizon"] = json!(12);
+    }
     sent
 }
 

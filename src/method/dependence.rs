@@ -112,10 +112,9 @@ pub fn judge(series: &Series, ordered: &Ordered, score: &Score, treatment: &Trea
     match treatment.dependence {
         Dependence::Ignore => {
             let attained = score.attained(treatment.p_by, treatment.continuity)?;
-            let looked_at = n <= MOST_LOOKED_AT && n > 3 && check(series, ordered, score).is_ok();
-            let r1 = if looked_at { ranks_autocorrelation(series, ordered)?.first().copied() } else { None };
+            let r1 = of_neighbours(series, ordered, score)?;
             let fact = Fact::new("r1", "Autocorrelation of neighbouring readings, the slope taken off", r1);
-            Ok(plain(attained, vec![fact], r1.and_then(|r1| caution(r1, n)).into_iter().collect()))
+            Ok(plain(attained, vec![fact], r1.and_then(|r1| caution(r1, n, ALLOWED_FOR)).into_iter().collect()))
         }
         Dependence::Variance => {
             refuse_exact(treatment, "the corrected variance")?;
@@ -212,10 +211,24 @@ fn variance_factor(correlations: &[f64], n: usize, treatment: &Treatment) -> f64
     1.0 + 2.0 / (n * (n - 1.0) * (n - 2.0)) * sum
 }
 
-fn caution(r1: f64, n: usize) -> Option<String> {
+/// What allows for dependence in the tests that take it as a parameter.
+const ALLOWED_FOR: &str = "dependence=variance, prewhiten or shuffle allows for it";
+
+/// The autocorrelation of the ranks of neighbouring readings, the slope taken off; `None` where it is not looked at.
+///
+/// # Errors
+/// The moments of the readings give no slope.
+pub fn of_neighbours(series: &Series, ordered: &Ordered, score: &Score) -> Result<Option<f64>, Refusal> {
+    let n = score.readings();
+    let looked_at = n <= MOST_LOOKED_AT && n > 3 && check(series, ordered, score).is_ok();
+    Ok(if looked_at { ranks_autocorrelation(series, ordered)?.first().copied() } else { None })
+}
+
+/// A caution if neighbours among `n` readings resemble each other more than chance would have it, and what to do about it.
+pub fn caution(r1: f64, n: usize, what_to_do: &str) -> Option<String> {
     (r1 > chance_limit(n)).then(|| {
         format!(
-            "Neighbouring readings resemble each other (autocorrelation {r1:.2} when the slope is taken off), which makes trends seem more certain than they are; dependence=variance, prewhiten or shuffle allows for it."
+            "Neighbouring readings resemble each other (autocorrelation {r1:.2} when the slope is taken off), which makes trends seem more certain than they are; {what_to_do}."
         )
     })
 }

@@ -149,7 +149,7 @@ impl Method for PlannedLooks {
         let mut facts = sought.facts(question.risk.0);
         facts.push(readings.fact());
         facts.extend(question.p_facts(&attained));
-        let mut cautions: Vec<String> = readings.caution(parameters.ties).into_iter().collect();
+        let mut cautions = readings.cautions(series, parameters.ties);
         if have > horizon {
             cautions.push(format!(
                 "The plan ended with reading {horizon}; {} later readings are not judged. A plan for them has to be made before they are seen, and starts with its own first reading.",

@@ -2,15 +2,17 @@
 //!
 //! The newest of t readings exceeds some of the earlier ones. Without a trend, and if no two readings are equal, how many it
 //! exceeds is uniform on 0 to t - 1 and independent of all that went before; both tests rest on that alone. Equal
-//! readings are therefore put in an order by a seeded draw, or they count against the direction sought, which is safe and blunt.
+//! readings are therefore drawn apart with a seed, or they count against the direction sought, which is safe and blunt.
 //!
-//! The draw for a reading depends on the seed and on how this reading and the earlier ones stand to each other, and on nothing
-//! else. So a later look breaks earlier ties as before, another unit changes nothing, and different series with one seed get
-//! different draws: were the draws the same for all, a seed that happens to draw a rise would do so in all of them.
+//! A draw says how many of the earlier equal ones a reading exceeds. It depends on the seed and on how this reading and the
+//! earlier ones stand to each other, and on nothing else. So a later look breaks earlier ties as before, another unit changes
+//! nothing, and different series with one seed get different draws: were the draws the same for all, a seed that happens to
+//! draw a rise would do so in all of them. Over all seeds the risk is exact.
 
-use super::{Fact, Refusal};
+use super::kendall::{Ordered, Score};
+use super::{Fact, Refusal, dependence};
 use crate::comparison::Order;
-use crate::comparison::order::{RunningCounts, earlier_lower_and_higher};
+use crate::comparison::order::earlier_lower_and_higher;
 use crate::null_distribution::draws::Draws;
 use crate::reading::{Series, Value};
 
@@ -25,7 +27,7 @@ crate::choices! {
 }
 
 /// What becomes of equal readings, for the cards.
-pub const TIES: &str = "A seeded draw puts equal readings in an order (ties=seeded), which keeps the risk exact; or they count against the direction sought (ties=against), which is safe and blunt.";
+pub const TIES: &str = "A seeded draw tells equal readings apart (ties=seeded), which keeps the risk exact over all seeds; or they count against the direction sought (ties=against), which is safe and blunt.";
 
 /// What becomes of gaps and limits, for the cards.
 pub const MISSING: &str =
@@ -63,7 +65,7 @@ impl Successive {
                 counts.iter().enumerate().map(|(number, &(lower, higher))| (part(number, lower), -part(number, higher))).unzip()
             }
             Ties::Seeded => {
-                let exceeded = broken(&values, &counts, seed)?;
+                let exceeded = drawn_apart(&values, &counts, seed)?;
                 let parts: Vec<i64> = exceeded.into_iter().enumerate().map(|(number, exceeded)| part(number, exceeded)).collect();
                 (parts.clone(), parts)
             }
@@ -76,11 +78,25 @@ impl Successive {
         Fact::new("tied_pairs", "Pairs of equal readings", self.tied_pairs)
     }
 
-    /// What to bear in mind about equal readings, if there are any.
-    pub fn caution(&self, ties: Ties) -> Option<String> {
+    /// What to bear in mind about equal readings and about readings that resemble their neighbours.
+    pub fn cautions(&self, series: &Series, ties: Ties) -> Vec<String> {
+        [self.caution_on_ties(ties), self.caution_on_dependence(series)].into_iter().flatten().collect()
+    }
+
+    fn caution_on_dependence(&self, series: &Series) -> Option<String> {
+        let ordered = Ordered::new(series, self.indices.clone());
+        let r1 = dependence::of_neighbours(series, &ordered, &Score::of(&ordered)).ok().flatten()?;
+        dependence::caution(
+            r1,
+            self.indices.len(),
+            "repeated looks do not allow for it, but readings further apart may be free of it",
+        )
+    }
+
+    fn caution_on_ties(&self, ties: Ties) -> Option<String> {
         let how = match ties {
             Ties::Seeded => {
-                "a seeded draw put them in an order. Another seed gives another p, so the seed is declared before looking and kept"
+                "a seeded draw told them apart. Another seed gives another p, so the seed is declared before looking and kept"
             }
             Ties::Against => "they count against the direction sought, so that p is an upper limit",
         };
@@ -88,30 +104,20 @@ impl Successive {
     }
 }
 
-/// For each reading, how many earlier ones it exceeds when a seeded draw puts equal ones in an order; `counts` says how many
-/// earlier ones are lower and higher.
-fn broken(values: &[Value], counts: &[(u64, u64)], seed: u32) -> Result<Vec<u64>, Refusal> {
-    let Some(order) = Order::of_values(values) else {
+/// For each reading, how many earlier ones it exceeds when a draw says how many of the equal ones it does; `counts` says how
+/// many earlier ones are lower and higher. Where being equal carries over from one reading to the next, all numbers of them are
+/// equally probable, as if each reading had been drawn its place among its equals.
+fn drawn_apart(values: &[Value], counts: &[(u64, u64)], seed: u32) -> Result<Vec<u64>, Refusal> {
+    if Order::of_values(values).is_none() {
         return Err(Refusal::Because(
             "limits at several levels leave no order in which equal readings could be drawn apart; ask for ties=against".into(),
         ));
-    };
+    }
     let mut state = u64::from(seed);
-    let draw = |&(lower, higher): &(u64, u64)| {
+    let exceeded = (0..).zip(counts).map(|(number, &(lower, higher)): (u64, _)| {
         let mut draws = Draws::seeded(state ^ (lower << 32 | higher));
         state = draws.below(u64::MAX);
-        draws.unit()
-    };
-    let drawn: Vec<f64> = counts.iter().map(draw).collect();
-    let mut sorted: Vec<usize> = (0..values.len()).collect();
-    sorted.sort_by(|&a, &b| order.places[a].cmp(&order.places[b]).then(drawn[a].total_cmp(&drawn[b])));
-    let mut places = vec![0; values.len()];
-    sorted.iter().enumerate().for_each(|(place, &number)| places[number] = place);
-    let mut earlier = RunningCounts::new(values.len());
-    let exceeded = places.iter().map(|&place| {
-        let below = earlier.below(place);
-        earlier.add(place);
-        below
+        lower + draws.below(number - lower - higher + 1)
     });
     Ok(exceeded.collect())
 }

@@ -162,7 +162,7 @@ impl Method for Watch {
             readings_used: readings.indices.len(),
             facts,
             evidence: listed.map(Evidence::Table).into_iter().collect(),
-            cautions: readings.caution(parameters.ties).into_iter().collect(),
+            cautions: readings.cautions(series, parameters.ties),
         })
     }
 }

@@ -11,7 +11,7 @@
 
 use super::q_multinomial::first_sums_with_uniform;
 
-/// The most readings that a path may have; time grows with their cube, some tens of milliseconds for all that one judging needs.
+/// The most readings that a path may have; time grows with their cube. One judging takes about a second in a build for tests.
 pub const MOST_READINGS: u32 = 520;
 
 /// Which excursions cross a boundary.

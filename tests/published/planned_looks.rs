@@ -160,6 +160,36 @@ fn one_look_is_a_single_test() {
     }
 }
 
+/// Equal readings drawn apart: over all orders of six readings with ties and 500 seeds, claims are made as often as the
+/// reply says that risk is spent, within four standard errors, and S after each reading has Kendall's variance.
+#[test]
+fn drawing_apart_spends_the_same_risk() {
+    let mut arrangements = std::collections::BTreeSet::new();
+    orders(6, &mut |order| {
+        arrangements.insert(order.iter().map(|&place| [1, 1, 1, 2, 2, 3][place as usize - 1]).collect::<Vec<u32>>());
+    });
+    assert_eq!(arrangements.len(), 60);
+    let (mut all, mut claims, mut spent, mut squares) = (0.0, 0.0, 0.0, [0.0; 5]);
+    for order in &arrangements {
+        for seed in 0..500 {
+            let body = json!({
+                "readings": order, "horizon": 6, "first_look": 2, "seek": "rising", "risk": 0.2, "spending": "pocock", "seed": seed
+            });
+            let outcome = judge(body).unwrap();
+            all += 1.0;
+            claims += f64::from(u8::from(outcome.p.value <= 0.2));
+            spent = fact(&outcome, "spent");
+            squares.iter_mut().zip(column(&outcome, "s")).for_each(|(sum, s)| *sum += s.unwrap().powi(2));
+        }
+    }
+    let error = (spent * (1.0 - spent) / all).sqrt();
+    assert!((claims / all - spent).abs() < 4.0 * error, "{} {spent} {error}", claims / all);
+    for (n, sum) in (2..).zip(squares) {
+        let variance = f64::from(n * (n - 1) * (2 * n + 5)) / 18.0;
+        assert!((sum / all / variance - 1.0).abs() < 4.0 * (2.0_f64 / all).sqrt(), "{n}: {} {variance}", sum / all);
+    }
+}
+
 fn grades(weeks: u64) -> Vec<u64> {
     (0..weeks).map(|week| (week * week * 7 % 11 + week / 9) % 5 + week / 12).collect()
 }

@@ -127,3 +127,12 @@ fn stakes_are_checked() {
         assert!(refused.to_string().contains("above 0 and below 1"), "{refused}");
     }
 }
+
+/// Readings in runs of five resemble their neighbours, and the reply says so.
+#[test]
+fn dependence_is_said() {
+    let cautions = |readings: Vec<u32>| judge(json!({ "readings": readings })).cautions;
+    let says_so = |cautions: Vec<String>| cautions.iter().any(|caution| caution.contains("resemble each other"));
+    assert!(says_so(cautions((0..60).map(|week| week / 5 * 5 % 7 * 10 + week % 5).collect())));
+    assert!(!says_so(cautions((0..60).map(|week| week * 37 % 61).collect())));
+}
