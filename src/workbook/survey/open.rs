@@ -53,6 +53,10 @@ pub fn format(path: &Path) -> Result<Format, Error> {
         file.seek(SeekFrom::Start(0))?;
         return Ok(if names_binary_workbook(&mut file)? { Format::Xlsb } else { Format::Package });
     }
+    let begins = |mark: &[u8]| head.trim_ascii_start().get(..mark.len()).is_some_and(|start| start.eq_ignore_ascii_case(mark));
+    if [&b"%PDF"[..], b"{\\rtf", b"<!doctype", b"<html", b"<?xml"].iter().any(|mark| begins(mark)) {
+        return Err(Error::Kind);
+    }
     if wide_encoding(&head).is_some() || four_byte_units(&head).is_some() || !head.contains(&0) {
         Ok(Format::Text)
     } else {
@@ -140,7 +144,7 @@ pub fn read(path: &Path, format: Format, skip: &[String], progress: &mut dyn FnM
         Format::Ods => whole::<Ods<_>>(path, skip),
         Format::Text => read_text(path, length),
     });
-    result.unwrap_or_else(|_| Err(Error::Unreadable("its contents are damaged".into())))
+    result.unwrap_or_else(|_| Err(Error::Unreadable("workbook")))
 }
 
 thread_local! {
@@ -164,8 +168,8 @@ fn quietly<T>(work: impl FnOnce() -> T) -> std::thread::Result<T> {
     result
 }
 
-fn unreadable(error: impl std::fmt::Display) -> Error {
-    Error::Unreadable(error.to_string())
+fn damaged<E>(_: E) -> Error {
+    Error::Unreadable("workbook")
 }
 
 /// Which sheets are read; what is said of the others.
@@ -188,54 +192,63 @@ fn chosen(sheets: &[calamine::Sheet], skip: &[String], remarks: &mut Vec<String>
 }
 
 fn read_xlsx(path: &Path, skip: &[String], progress: &mut dyn FnMut(u64, u64)) -> Result<Cells, Error> {
-    let mut book: Xlsx<_> = Xlsx::new(BufReader::new(File::open(path)?)).map_err(unreadable)?;
+    let mut book: Xlsx<_> = Xlsx::new(BufReader::new(File::open(path)?)).map_err(damaged)?;
     let mut cells = Cells::default();
     let names = chosen(book.sheets_metadata(), skip, &mut cells.remarks);
     for (done, name) in names.iter().enumerate() {
         progress(done as u64, names.len() as u64);
         cells.begin_sheet(name);
-        let failed = match book.worksheet_cells_reader(name) {
-            Err(error) => Some(error.to_string()),
-            Ok(mut reader) => loop {
-                match reader.next_cell() {
-                    Ok(None) => break None,
-                    Err(error) => break Some(error.to_string()),
-                    Ok(Some(cell)) => {
-                        let (row, column) = cell.get_position();
-                        let packed = pack_ref(cell.get_value(), &mut cells);
-                        cells.add(row, column, packed);
-                        if cells.count() > MOST_CELLS {
-                            return Err(Error::TooManyCells(MOST_CELLS));
-                        }
-                    }
-                }
-            },
-        };
-        if let Some(error) = failed {
-            cells.remarks.push(format!("The sheet {name} could not be read ({error})."));
+        match read_sheet(&mut book, name, &mut cells) {
+            Err(Error::Unreadable(_)) => cells.remarks.push(unread_sheet(name)),
+            read => read?,
         }
     }
     Ok(cells)
 }
 
+fn read_sheet(book: &mut Xlsx<BufReader<File>>, name: &str, cells: &mut Cells) -> Result<(), Error> {
+    let mut reader = book.worksheet_cells_reader(name).map_err(damaged)?;
+    let percentages: Vec<bool> = reader.styles().iter().map(shows_percentage).collect();
+    while let Some((cell, style)) = reader.next_cell_with_style_id().map_err(damaged)? {
+        let (row, column) = cell.get_position();
+        let packed = pack_ref(cell.get_value(), cells);
+        cells.add(row, column, packed);
+        if percentages.get(style) == Some(&true) && matches!(packed, Packed::Number(_)) {
+            cells.note_percentage(column);
+        }
+        if cells.count() > MOST_CELLS {
+            return Err(Error::TooManyCells(MOST_CELLS));
+        }
+    }
+    Ok(())
+}
+
+fn unread_sheet(name: &str) -> String {
+    format!("The sheet {name} is damaged and its readings were left out; save the workbook anew and send that.")
+}
+
+/// Whether numbers in a style are shown as percentages.
+fn shows_percentage(style: &calamine::Style) -> bool {
+    style.number_format.as_ref().is_some_and(|format| format.format_code.contains('%'))
+}
+
 fn whole<R>(path: &Path, skip: &[String]) -> Result<Cells, Error>
 where
     R: Reader<BufReader<File>>,
-    R::Error: std::fmt::Display,
 {
-    let mut book = R::new(BufReader::new(File::open(path)?)).map_err(unreadable)?;
+    let mut book = R::new(BufReader::new(File::open(path)?)).map_err(damaged)?;
     let mut cells = Cells::default();
     for name in chosen(book.sheets_metadata(), skip, &mut cells.remarks) {
         cells.begin_sheet(&name);
         let range = book.worksheet_range(&name);
-        add_range(&mut cells, &name, range.map_err(unreadable))?;
+        add_range(&mut cells, &name, range.map_err(damaged))?;
     }
     Ok(cells)
 }
 
 fn add_range(cells: &mut Cells, name: &str, range: Result<calamine::Range<Data>, Error>) -> Result<(), Error> {
     match range {
-        Err(error) => cells.remarks.push(format!("The sheet {name} could not be read ({error}).")),
+        Err(_) => cells.remarks.push(unread_sheet(name)),
         Ok(range) => {
             let (top, left) = range.start().unwrap_or_default();
             for (row, column, value) in range.used_cells() {
@@ -313,11 +326,11 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
         .flexible(true)
         .from_reader(Cursor::new(text.as_bytes()));
     for record in reader.records() {
-        let record = record.map_err(unreadable)?;
+        let record = record.map_err(|_| Error::Unreadable("text table"))?;
         let row = record.position().map_or(0, |position| position.record()) as u32;
         for (column, field) in record.iter().enumerate() {
             let packed = match field.trim().parse::<f64>() {
-                Ok(number) if number.is_finite() && field.trim().bytes().all(|b| b.is_ascii_digit() || b"+-.eE".contains(&b)) => {
+                Ok(number) if number.is_finite() && !has_leading_zero(field) && field.trim().bytes().all(|b| b.is_ascii_digit() || b"+-.eE".contains(&b)) => {
                     Packed::Number(number)
                 }
                 _ => pack_text(field, &mut cells),
@@ -334,6 +347,11 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
     };
     cells.remarks.push(format!("The text table was read as {encoding} with {shown} between the columns."));
     Ok(cells)
+}
+
+/// `00417` names something; `0.5` and `0` count.
+fn has_leading_zero(field: &str) -> bool {
+    field.trim().strip_prefix('0').is_some_and(|rest| rest.starts_with(|c: char| c.is_ascii_digit()))
 }
 
 /// The separator that splits the first lines into the same, largest number of columns.
