@@ -1,8 +1,6 @@
 //! Workbooks are drawn row by row; what was found is compared with what a person marked.
 
-use std::io::Cursor;
-
-use risefall::workbook::survey::{Cells, Format, Survey, read_from};
+use risefall::workbook::survey::{self, Cells, Error, Survey};
 use rust_xlsxwriter::{ExcelDateTime, Format as Look, Workbook, Worksheet};
 
 /// A cell to be written.
@@ -109,16 +107,22 @@ pub fn marked(name: &str, cells: &str, moments: &str, count: usize, missing: usi
     Marked { name: name.into(), cells: cells.into(), moments: moments.into(), count, missing, unit: unit.into() }
 }
 
+/// Reads a workbook from its bytes, without the sheets named in `skip`; a text table's sheet is named `Data`.
+pub fn read(bytes: &[u8], skip: &[String]) -> Result<Cells, Error> {
+    let folder = tempfile::tempdir().unwrap();
+    let path = folder.path().join("Data.bin");
+    std::fs::write(&path, bytes).unwrap();
+    survey::read(&path, survey::format(&path)?, skip, &mut |_, _| {})
+}
+
 /// Reads a workbook from its bytes.
 pub fn cells(bytes: &[u8]) -> Cells {
-    let mut source = Cursor::new(bytes);
-    let format = Format::detect(&mut source).unwrap();
-    read_from(source, "Data", format, &[], &mut |_, _| {}).unwrap()
+    read(bytes, &[]).unwrap()
 }
 
 /// Surveys a workbook from its bytes.
 pub fn survey(bytes: &[u8]) -> Survey {
-    risefall::workbook::survey::survey(&cells(bytes))
+    survey::survey(&cells(bytes))
 }
 
 /// What was found, in the form in which a person marks.

@@ -111,7 +111,7 @@ fn newest_first_is_read_from_below() {
     let indicator = &survey.indicators[0];
     assert_eq!(indicator.place.rows, Order::Up { first: 10, count: 10 });
     assert_eq!(indicator.series.moments.label(0), "2025-03-01");
-    assert!(says(&indicator.remarks, &["newest", "from below"]));
+    assert!(says(&indicator.remarks, &["newest", "from the bottom up"]));
 }
 
 #[test]
@@ -119,10 +119,10 @@ fn unsorted_and_repeated_moments_are_said_and_kept() {
     let days = [3, 1, 2, 4, 5];
     let survey_of = |days: &[u8]| survey(&with_moments("Date", days.iter().map(|&day| Put::Date(2025, 3, day)).collect()));
     let unsorted = survey_of(&days);
-    assert!(says(&unsorted.indicators[0].remarks, &["not in time order", "`2025-03-01`", "Data!A3"]));
+    assert!(says(&unsorted.indicators[0].remarks, &["not in time order", "`2025-03-01`", "A3 of Data"]));
     assert!(unsorted.indicators[0].series.moments.check_order(true, None).is_err());
     let repeated = survey_of(&[1, 2, 2, 3, 4]);
-    assert!(says(&repeated.indicators[0].remarks, &["several readings", "`2025-03-02`", "Data!A4"]));
+    assert!(says(&repeated.indicators[0].remarks, &["several readings", "`2025-03-02`", "A4 of Data", "jonckheere-terpstra", "median"]));
     assert!(repeated.indicators[0].series.moments.check_order(true, None).is_ok());
     assert!(repeated.indicators[0].series.moments.check_order(false, None).is_err());
 }
@@ -166,7 +166,7 @@ fn rows_to_come_are_left_out() {
         &book("Plan", rows),
         &[marked("Score", "Plan!B2:B10", "Plan!A2:A10", 9, 0, ""), marked("Visits", "Plan!C2:C10", "Plan!A2:A10", 9, 1, "")],
     );
-    assert!(says(&survey.remarks, &["11 rows from row 11", "no readings yet"]));
+    assert!(says(&survey.remarks, &["11 rows of the sheet Plan, from row 11 on", "no readings yet"]));
 }
 
 #[test]
@@ -180,6 +180,6 @@ fn subtotals_and_blank_rows_between_readings_are_left_out() {
     let survey = check(&book("Shop", rows), &[marked("Sold", "Shop!B2:B15", "Shop!A2:A15", 12, 0, "")]);
     assert_eq!(survey.indicators[0].place.rows.row(6), 9);
     assert!(
-        says(&survey.remarks, &["Row 8 of Shop (`Total 2023`)"]) && says(&survey.remarks, &["Row 16 of Shop (`Total 2024`)"])
+        says(&survey.remarks, &["Row 8 of the sheet Shop, `Total 2023`"]) && says(&survey.remarks, &["Row 16 of the sheet Shop, `Total 2024`"])
     );
 }

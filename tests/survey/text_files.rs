@@ -22,11 +22,11 @@ fn check_heights(bytes: &[u8]) -> Survey {
 }
 
 #[test]
-fn separators_and_decimal_signs_are_found_and_said() {
+fn separators_are_found_and_said() {
     let said = |bytes: &[u8], words: &[&str]| assert!(says(&check_heights(bytes).remarks, words));
-    said(table(";", ",", "\r\n").as_bytes(), &["UTF-8", "`;`", "a comma"]);
-    said(table(",", ".", "\n").as_bytes(), &["UTF-8", "`,`", "a point"]);
-    said(table("\t", ",", "\n").as_bytes(), &["tabs", "a comma"]);
+    said(table(";", ",", "\r\n").as_bytes(), &["UTF-8", "`;`"]);
+    said(table(",", ".", "\n").as_bytes(), &["UTF-8", "`,`"]);
+    said(table("\t", ",", "\n").as_bytes(), &["tab"]);
     said(table("|", ".", "\n").as_bytes(), &["`|`"]);
     said(format!("sep=;\r\n{}", table(";", ",", "\r\n")).as_bytes(), &["`;`"]);
 }

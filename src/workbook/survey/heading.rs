@@ -28,7 +28,7 @@ fn text(view: View<'_>, row: u32, column: u32) -> String {
     view.cell(row, column).quote().split_whitespace().collect::<Vec<_>>().join(" ")
 }
 
-/// The rows above the readings that head them, from the top. A row with a single text above a wider table is a title, and
+/// The rows above the readings that head them, from the top. A row with a single text at the left above a wider table is a title, and
 /// one with more numbers than words belongs to something else.
 pub fn heading_rows(view: View<'_>, block: Block, first: u32) -> Vec<u32> {
     let mut rows = Vec::new();
@@ -39,7 +39,7 @@ pub fn heading_rows(view: View<'_>, block: Block, first: u32) -> Vec<u32> {
         if filled.is_empty() && rows.is_empty() {
             continue;
         }
-        let title = filled.len() < 2 && !single_column;
+        let title = filled.len() < 2 && filled.first().is_none_or(|&column| column == block.left) && !single_column;
         let note = filled.iter().any(|&column| view.text(row, column).is_some_and(|text| text.len() > LONGEST_NAME));
         let data = filled.iter().filter(|&&column| view.kind(row, column).is_data()).count();
         if title || note || data * 2 > filled.len() && !rows.is_empty() {

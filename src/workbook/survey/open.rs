@@ -316,7 +316,12 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
     }
     let bytes = std::fs::read(path)?;
     let (text, encoding) = decode(&bytes);
-    let separator = separator(&text);
+    let (text, stated) = match text.split_once('\n').and_then(|(first, rest)| Some((stated_separator(first)?, rest))) {
+        Some((stated, rest)) => (Cow::Borrowed(rest), Some(stated)),
+        None => (text, None),
+    };
+    let separator = stated.unwrap_or_else(|| separator(&text));
+    let text = with_blank_lines(&text, separator);
     let mut cells = Cells::default();
     let name = path.file_stem().map(|stem| stem.to_string_lossy().into_owned()).unwrap_or_default();
     cells.begin_sheet(&name);
@@ -333,7 +338,10 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
                 Ok(number) if number.is_finite() && !has_leading_zero(field) && field.trim().bytes().all(|b| b.is_ascii_digit() || b"+-.eE".contains(&b)) => {
                     Packed::Number(number)
                 }
-                _ => pack_text(field, &mut cells),
+                _ => match grouped_number(field).filter(|_| separator == b',') {
+                    Some(number) => Packed::Number(number),
+                    None => pack_text(field, &mut cells),
+                },
             };
             cells.add(row, column as u32, packed);
             if cells.count() > MOST_CELLS {
@@ -347,6 +355,42 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
     };
     cells.remarks.push(format!("The text table was read as {encoding} with {shown} between the columns."));
     Ok(cells)
+}
+
+/// The separator in a first line such as `sep=;`, which some programs write.
+fn stated_separator(line: &str) -> Option<u8> {
+    match line.trim().as_bytes() {
+        [b's' | b'S', b'e' | b'E', b'p' | b'P', b'=', separator] => Some(*separator),
+        _ => None,
+    }
+}
+
+/// The text with a separator in each blank line outside quotes, so that it stays a row, which parts tables.
+fn with_blank_lines(text: &str, separator: u8) -> Cow<'_, str> {
+    if !text.contains("\n\n") && !text.contains("\n\r\n") {
+        return text.into();
+    }
+    let mut kept = String::with_capacity(text.len() + 64);
+    let mut in_quotes = false;
+    for line in text.split_inclusive('\n') {
+        if !in_quotes && line.trim().is_empty() {
+            kept.push(separator.into());
+        }
+        kept.push_str(line);
+        in_quotes ^= line.bytes().filter(|byte| *byte == b'"').count() % 2 == 1;
+    }
+    kept.into()
+}
+
+/// `12,480` between commas is a whole number in groups of three, since a comma within a field is no decimal sign there.
+fn grouped_number(field: &str) -> Option<f64> {
+    let field = field.trim();
+    let (whole, rest) = field.split_once('.').map_or((field, None), |(whole, rest)| (whole, Some(rest)));
+    let digits = |part: &str| !part.is_empty() && part.bytes().all(|byte| byte.is_ascii_digit());
+    let mut groups = whole.strip_prefix('-').unwrap_or(whole).split(',');
+    let first = groups.next().filter(|first| digits(first) && first.len() <= 3)?;
+    let grouped = whole.len() > first.len() + 1 && groups.all(|group| digits(group) && group.len() == 3);
+    if grouped && rest.is_none_or(digits) { field.replace(',', "").parse().ok() } else { None }
 }
 
 /// `00417` names something; `0.5` and `0` count.

@@ -27,6 +27,9 @@ pub enum StatedError {
     /// Moments must stand beside the readings.
     #[error("the moments {moments} do not stand beside the readings {cells}, row by row")]
     Beside { moments: String, cells: String },
+    /// No row of a long table has the indicator's name.
+    #[error("no row of {names} is named `{name}`; write the indicator's name as it stands there")]
+    Name { names: String, name: String },
     /// The grades cannot be read.
     #[error("{0}")]
     Grades(#[from] crate::reading::scale::GradesError),
@@ -65,8 +68,10 @@ pub fn indicator_at(cells: &Cells, row: &PlanRow) -> Result<Indicator, StatedErr
             let value = heading.map(|at| cells.cell(sheet, at.row, at.column).quote()).unwrap_or_default();
             let rows: Vec<u32> =
                 (rows.0..=rows.1).filter(|&at| is_named(&cells.cell(sheet, at, names).quote(), row.indicator.trim(), &value)).collect();
-            let cell = rows.first().map(|&row| CellRef { row, column: names });
-            (rows, cell)
+            let Some(&first) = rows.first() else {
+                return Err(StatedError::Name { names: row.names.clone(), name: row.indicator.clone() });
+            };
+            (rows, Some(CellRef { row: first, column: names }))
         }
         None => (rows_of_readings(view, column, moments, rows), heading),
     };
@@ -88,7 +93,8 @@ fn rows_of_readings(view: View<'_>, column: u32, moments: Option<u32>, (first, l
 
 /// Whether a name in a long table is the wanted one: as it stands, without its unit, or with the heading of its values.
 fn is_named(text: &str, wanted: &str, value: &str) -> bool {
+    let (text, wanted, value) = (text.to_lowercase(), wanted.to_lowercase(), value.to_lowercase());
     text == wanted
-        || split_unit(text).0 == wanted
-        || wanted.strip_prefix(text).and_then(|rest| rest.strip_prefix(": ")) == Some(split_unit(value).0.as_str())
+        || split_unit(&text).0 == wanted
+        || wanted.strip_prefix(&text).and_then(|rest| rest.strip_prefix(": ")) == Some(split_unit(&value).0.as_str())
 }

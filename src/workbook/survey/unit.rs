@@ -7,7 +7,7 @@ const UNITS: &str = "\
     JPY k€ kEUR T€ TEUR k$ m€ mEUR bar mbar hPa kPa MPa Pa psi mmHg bpm /min mg/l mg/L µg/l ug/l ug/L ng/l mg/dl mmol/l mmol/L mol \
     W kW MW GW Wh kWh MWh GWh J kJ MJ kcal cal V mV A mA Hz kHz MHz dB dBA lx lm m² m2 m³ m3 cm³ ha km² km2 km/h m/s l/s m³/s m3/s \
     m³/h m3/h ppm ppb NTU FNU pH µS/cm uS/cm mS/cm pcs pc units points pts calls visits guests rooms persons people \
-    patients cases events failures complaints thousand thousands million millions 000s '000 000 k M Mio Tsd Stk Std Min Sek Tage \
+    patients cases events failures complaints count counts number ratio share thousand thousands million millions 000s '000 000 k M Mio Tsd Stk Std Min Sek Tage \
     jours heures Stunden Minuten Sekunden horas minutos días";
 
 /// Whether a text is a unit by its looks.
