@@ -122,7 +122,10 @@ fn unsorted_and_repeated_moments_are_said_and_kept() {
     assert!(says(&unsorted.indicators[0].remarks, &["not in time order", "`2025-03-01`", "A3 of Data"]));
     assert!(unsorted.indicators[0].series.moments.check_order(true, None).is_err());
     let repeated = survey_of(&[1, 2, 2, 3, 4]);
-    assert!(says(&repeated.indicators[0].remarks, &["several readings", "`2025-03-02`", "A4 of Data", "jonckheere-terpstra", "median"]));
+    assert!(says(
+        &repeated.indicators[0].remarks,
+        &["several readings", "`2025-03-02`", "A4 of Data", "jonckheere-terpstra", "median"]
+    ));
     assert!(repeated.indicators[0].series.moments.check_order(true, None).is_ok());
     assert!(repeated.indicators[0].series.moments.check_order(false, None).is_err());
 }
@@ -180,6 +183,7 @@ fn subtotals_and_blank_rows_between_readings_are_left_out() {
     let survey = check(&book("Shop", rows), &[marked("Sold", "Shop!B2:B15", "Shop!A2:A15", 12, 0, "")]);
     assert_eq!(survey.indicators[0].place.rows.row(6), 9);
     assert!(
-        says(&survey.remarks, &["Row 8 of the sheet Shop, `Total 2023`"]) && says(&survey.remarks, &["Row 16 of the sheet Shop, `Total 2024`"])
+        says(&survey.remarks, &["Row 8 of the sheet Shop, `Total 2023`"])
+            && says(&survey.remarks, &["Row 16 of the sheet Shop, `Total 2024`"])
     );
 }

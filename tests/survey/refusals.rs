@@ -32,7 +32,7 @@ fn a_damaged_workbook_is_refused_in_plain_words() {
     assert_eq!(problem.code, "workbook-damaged");
     assert_eq!(
         problem.message,
-        "the workbook is damaged and cannot be read; open it in the spreadsheet program, save it anew, and send that"
+        "the cells of the workbook cannot be read; open it in the spreadsheet program, save it anew, and send that"
     );
     // Any single byte may be damaged: the answer is a workbook or a sentence.
     for position in (0..whole.len()).step_by(7) {

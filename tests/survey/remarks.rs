@@ -93,7 +93,10 @@ fn rows_without_moments_are_said() {
         row!["2025-W05", 7],
     ];
     let survey = check(&book("Gaps", rows), &[marked("Score", "Gaps!B2:B6", "Gaps!A2:A6", 3, 0, "")]);
-    assert!(says(&survey.remarks, &["Row 3 of the sheet Gaps", "no moment"]) && says(&survey.remarks, &["Row 5 of the sheet Gaps", "`closed`"]));
+    assert!(
+        says(&survey.remarks, &["Row 3 of the sheet Gaps", "no moment"])
+            && says(&survey.remarks, &["Row 5 of the sheet Gaps", "`closed`"])
+    );
 }
 
 #[test]

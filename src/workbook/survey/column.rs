@@ -60,8 +60,7 @@ fn numbers(view: View<'_>, column: &Column, rows: &[u32], dated: bool, is_first:
     if dated && times && words::names_times_of_day(heading) {
         return left_out("it holds times of day");
     }
-    let (codes, calendar, set) =
-        (words::names_codes(heading), words::names_calendar(heading), words::names_set_level(heading));
+    let (codes, calendar, set) = (words::names_codes(heading), words::names_calendar(heading), words::names_set_level(heading));
     let long_number = matches!(rows.first().map(|&row| view.get(row, column.column)), Some(Packed::Number(n)) if n >= 1e9);
     if !(codes || calendar || set || is_first || heading.is_empty() || long_number) {
         return Role::Readings;

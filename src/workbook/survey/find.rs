@@ -120,8 +120,7 @@ fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut S
                 let timeline = Timeline::of(view, moments, rows);
                 for column in &columns {
                     let named = in_group(&group.name, names, column, columns.len());
-                    let made =
-                        indicator(view, column.column, &timeline, Named { cell: Some(group.cell), ..named }, None);
+                    let made = indicator(view, column.column, &timeline, Named { cell: Some(group.cell), ..named }, None);
                     if made.series.count_present() >= 2 || !made.understood.grades_assumed && made.series.len() >= 2 {
                         survey.indicators.push(made);
                     }

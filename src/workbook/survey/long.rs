@@ -49,7 +49,10 @@ pub fn groups(view: View<'_>, table: &Table, moments: &[u32], rows: &[u32]) -> O
     let may_name = |column: &&Column| {
         let look = &column.look;
         let named = look.count(Kind::Word) + look.count(Kind::Code) + look.count(Kind::Period);
-        !moments.contains(&column.column) && look.mostly() == Mostly::Words && named as usize * 10 >= rows.len() * 9
+        !moments.contains(&column.column)
+            && !words::names_recorders(&column.heading.name)
+            && look.mostly() == Mostly::Words
+            && named as usize * 10 >= rows.len() * 9
     };
     let mut candidates: Vec<&Column> = table.columns.iter().filter(may_name).collect();
     if candidates.is_empty() {

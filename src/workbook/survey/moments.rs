@@ -108,9 +108,7 @@ fn moment_cells(view: View<'_>, moments: u32, rows: &[u32], companion: Option<Co
     let plain = || rows.iter().map(|&row| view.cell(row, moments));
     match companion {
         None => plain().collect(),
-        Some(Companion::Times { column }) => {
-            plain().zip(rows).map(|(cell, &row)| at_time(cell, view.get(row, column))).collect()
-        }
+        Some(Companion::Times { column }) => plain().zip(rows).map(|(cell, &row)| at_time(cell, view.get(row, column))).collect(),
         Some(Companion::Years { column, cycle }) => match years(view, column, rows) {
             Some(years) => plain().zip(years).map(|(cell, year)| with_year(cell, year, cycle)).collect(),
             None => plain().collect(),

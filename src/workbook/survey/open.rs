@@ -224,7 +224,9 @@ fn read_sheet(book: &mut Xlsx<BufReader<File>>, name: &str, cells: &mut Cells) -
 }
 
 fn unread_sheet(name: &str) -> String {
-    format!("The sheet {name} is damaged and its readings were left out; save the workbook anew and send that.")
+    format!(
+        "The cells of the sheet {name} cannot be read; open the workbook in the spreadsheet program, save it anew, and send that."
+    )
 }
 
 /// Whether numbers in a style are shown as percentages.
@@ -335,7 +337,11 @@ fn read_text(path: &Path, length: u64) -> Result<Cells, Error> {
         let row = record.position().map_or(0, |position| position.record()) as u32;
         for (column, field) in record.iter().enumerate() {
             let packed = match field.trim().parse::<f64>() {
-                Ok(number) if number.is_finite() && !has_leading_zero(field) && field.trim().bytes().all(|b| b.is_ascii_digit() || b"+-.eE".contains(&b)) => {
+                Ok(number)
+                    if number.is_finite()
+                        && !has_leading_zero(field)
+                        && field.trim().bytes().all(|b| b.is_ascii_digit() || b"+-.eE".contains(&b)) =>
+                {
                     Packed::Number(number)
                 }
                 _ => match grouped_number(field).filter(|_| separator == b',') {

@@ -64,9 +64,7 @@ pub fn rows_are(view: View<'_>, table: &Table) -> RowsAre {
         Mostly::Words if words::names_moments(&first.heading.name) && !words::names_things(&first.heading.name) => {
             RowsAre::Moments(first.column)
         }
-        Mostly::Words
-            if first.look.count(Kind::Word) > 0 && distinct(view, first.column, rows()) * 10 >= count as usize * 8 =>
-        {
+        Mostly::Words if first.look.count(Kind::Word) > 0 && distinct(view, first.column, rows()) * 10 >= count as usize * 8 => {
             RowsAre::Things(first.column)
         }
         _ => RowsAre::Positions,
@@ -128,7 +126,8 @@ pub fn readings(view: View<'_>, labels: Labels, (first, last): (u32, u32)) -> Re
         let is_moment = mostly.as_ref().is_none_or(|(column, look)| may_be_moment(look, view.kind(row, *column)));
         let label = summary_label(view, &labels, row).filter(|_| !is_moment || is_word_in_moments(view, &labels, row));
         if let Some(label) = label {
-            left_out.push((row, format!("Row {} of the sheet {sheet}, `{label}`, sums up other rows and was left out.", row + 1)));
+            left_out
+                .push((row, format!("Row {} of the sheet {sheet}, `{label}`, sums up other rows and was left out.", row + 1)));
             continue;
         }
         match mostly {
@@ -158,7 +157,9 @@ pub fn readings(view: View<'_>, labels: Labels, (first, last): (u32, u32)) -> Re
     let more = left_out.len().saturating_sub(MOST_SAID);
     found.remarks.extend(left_out.into_iter().take(MOST_SAID).map(|(_, remark)| remark));
     if more > 0 {
-        found.remarks.push(format!("{more} further rows of the sheet {sheet} sum up others or have no moment and were left out."));
+        found
+            .remarks
+            .push(format!("{more} further rows of the sheet {sheet} sum up others or have no moment and were left out."));
     }
     found
 }

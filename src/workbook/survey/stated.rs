@@ -66,8 +66,9 @@ pub fn indicator_at(cells: &Cells, row: &PlanRow) -> Result<Indicator, StatedErr
     let (kept, cell) = match names {
         Some(names) => {
             let value = heading.map(|at| cells.cell(sheet, at.row, at.column).quote()).unwrap_or_default();
-            let rows: Vec<u32> =
-                (rows.0..=rows.1).filter(|&at| is_named(&cells.cell(sheet, at, names).quote(), row.indicator.trim(), &value)).collect();
+            let rows: Vec<u32> = (rows.0..=rows.1)
+                .filter(|&at| is_named(&cells.cell(sheet, at, names).quote(), row.indicator.trim(), &value))
+                .collect();
             let Some(&first) = rows.first() else {
                 return Err(StatedError::Name { names: row.names.clone(), name: row.indicator.clone() });
             };

@@ -40,6 +40,11 @@ const TIMES_OF_DAY: &str = "\
     time, time of day, hour, clock, at, from, to, until, start, end, started, ended, start time, end time, uhrzeit, zeit, \
     heure, hora, ora";
 
+/// Words that name who recorded a row, which does not tell indicators apart.
+const RECORDERS: &str = "\
+    by, who, staff, employee, teacher, nurse, operator, technician, inspector, observer, auditor, assessor, reviewer, \
+    contact, supervisor, prüfer, inspecteur, note, notes, comment, comments, remark, remarks, weekday";
+
 /// Words that name numbers which count nothing.
 const CODES: &str = "\
     id, no, nr, #, code, ref, reference, key, ticket, account, phone, telephone, tel, fax, mobile, zip, postcode, \
@@ -153,6 +158,12 @@ pub fn names_things(header: &str) -> bool {
 pub fn names_codes(header: &str) -> bool {
     let header = plain(header);
     among(CODES, &header) || among("id, no, nr, code, phone, barcode", last_word(&header))
+}
+
+/// Whether a header names who recorded a row: `Inspector`, `Entered by`.
+pub fn names_recorders(header: &str) -> bool {
+    let header = plain(header);
+    among(RECORDERS, &header) || header.ends_with(" by") || among(RECORDERS, last_word(&header))
 }
 
 /// Whether a header announces times of day.
