@@ -1,5 +1,6 @@
 //! When readings were taken: dates, period labels, numbers, or positions alone.
 
+pub mod cycle;
 pub mod period;
 
 use jiff::civil::{Date, DateTime};
@@ -117,7 +118,7 @@ impl Moments {
     #[must_use]
     pub fn counted_on(mut self) -> Self {
         if self.kind == MomentKind::Number
-            && let Some(axis) = period::cycle(&self.labels, &self.axis).and_then(|cycle| cycle.counted_on(&self.axis))
+            && let Some(axis) = cycle::cycle(&self.labels, &self.axis).and_then(|cycle| cycle.counted_on(&self.axis))
         {
             self.axis = axis;
         }

@@ -81,8 +81,26 @@ fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut S
     let mut found = readings(view, Labels::of(table, moments), table.rows);
     let companion = moments.and_then(|column| Companion::of(view, column, &found.rows));
     let times: Vec<u32> = moments.into_iter().chain(companion.map(Companion::column)).collect();
-    let long = if moments.is_some() { groups(view, table, &times, &found.rows) } else { None };
+    let mut columns: Vec<&Column> = Vec::new();
+    let mut left_out: Vec<(u32, String)> = Vec::new();
+    for (index, column) in table.columns.iter().enumerate().filter(|(_, column)| !times.contains(&column.column)) {
+        let why = match role(view, column, &found.rows, moments.is_some(), index == 0) {
+            Role::Readings if column.look.present() < 2 => "it has fewer than two readings",
+            Role::Readings => {
+                columns.push(column);
+                continue;
+            }
+            Role::LeftOut(Some(why)) => why,
+            Role::LeftOut(None) => continue,
+        };
+        left_out.push((column.column, format!("{} was left out: {why}.", of_column(column, sheet))));
+    }
+    let numbers: Vec<u32> = columns.iter().map(|column| column.column).collect();
+    let no_names: Vec<u32> = times.iter().chain(&numbers).copied().collect();
+    let long = moments.and_then(|_| groups(view, table, &times, &no_names, &found.rows));
     let names = long.as_ref().map(|(names, _)| *names);
+    let said = left_out.into_iter().filter(|(column, _)| Some(*column) != names);
+    found.remarks.extend(said.map(|(_, remark)| remark));
     let timeline = if long.is_none() { Some(Timeline::of(view, moments, found.rows.clone())) } else { None };
     if let Some(named) = names_its_rows(view, table, timeline.as_ref()) {
         survey.remarks.push(format!(
@@ -92,21 +110,6 @@ fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut S
         ));
         return;
     }
-    let mut columns: Vec<&Column> = Vec::new();
-    for (index, column) in table.columns.iter().enumerate() {
-        if times.contains(&column.column) || names == Some(column.column) {
-            continue;
-        }
-        match role(view, column, &found.rows, moments.is_some(), index == 0) {
-            Role::Readings if column.look.present() < 2 => {
-                found.remarks.push(format!("{} was left out: it has fewer than two readings.", of_column(column, sheet)));
-            }
-            Role::Readings => columns.push(column),
-            Role::LeftOut(Some(why)) => found.remarks.push(format!("{} was left out: {why}.", of_column(column, sheet))),
-            Role::LeftOut(None) => {}
-        }
-    }
-    let numbers: Vec<u32> = columns.iter().map(|column| column.column).collect();
     let before = found.rows.len();
     without_rows_to_come(view, &numbers, &mut found);
     let whole = before == found.rows.len();

@@ -44,12 +44,12 @@ pub fn distinct(view: View<'_>, column: u32, rows: impl Iterator<Item = u32>) ->
 }
 
 /// The column of names and the indicators, if the table is a long one: moments repeat, and together with a name they do
-/// not. `moments` are the columns that say when.
-pub fn groups(view: View<'_>, table: &Table, moments: &[u32], rows: &[u32]) -> Option<(u32, Vec<Group>)> {
+/// not. `moments` are the columns that say when; `passed_over` are those that hold no names.
+pub fn groups(view: View<'_>, table: &Table, moments: &[u32], passed_over: &[u32], rows: &[u32]) -> Option<(u32, Vec<Group>)> {
     let may_name = |column: &&Column| {
         let look = &column.look;
         let named = look.count(Kind::Word) + look.count(Kind::Code) + look.count(Kind::Period);
-        !moments.contains(&column.column)
+        !passed_over.contains(&column.column)
             && !words::names_recorders(&column.heading.name)
             && look.mostly() == Mostly::Words
             && named as usize * 10 >= rows.len() * 9

@@ -17,6 +17,7 @@ mod open;
 mod rows;
 mod stated;
 mod table;
+mod text_table;
 mod unit;
 mod view;
 mod words;
