@@ -172,3 +172,44 @@ fn half_hourly_times_beside_dates_make_moments() {
     assert_eq!(survey.indicators[0].series.moments.label(1), "2025-09-01 14:00");
     assert!(says(&survey.indicators[0].remarks, &["times of day in column B"]));
 }
+
+#[test]
+fn years_side_by_side_are_one_series_and_so_not_taken_as_several() {
+    let mut rows: Rows = vec![row!["Month", 2022, 2023, 2024]];
+    for (index, month) in (0..).zip(["Jan", "Feb", "Mar", "Apr", "May", "Jun"]) {
+        rows.push(row![month, 40 + index * 3, 42 + index * 5 % 7, 45 + index]);
+    }
+    let survey = check(&book("Rain", rows), &[]);
+    assert!(says(&survey.remarks, &["rows 2 to 7 of the sheet Rain", "side by side"]));
+}
+
+#[test]
+fn dates_that_can_be_read_in_two_ways_are_not_guessed() {
+    let mut rows: Rows = vec![row!["Date", "Queue"]];
+    rows.extend(["03/04/2025", "04/04/2025", "05/04/2025", "06/04/2025"].iter().zip(5..).map(|(date, queue)| row![*date, queue]));
+    let survey = check(&book("Door", rows), &[marked("Queue", "Door!B2:B5", "Door!A2:A5", 4, 0, "")]);
+    assert_eq!(survey.indicators[0].series.moments.kind(), MomentKind::Label);
+    assert!(says(&survey.indicators[0].remarks, &["`03/04/2025`", "several ways"]));
+}
+
+#[test]
+fn gaps_and_closed_days_keep_their_place_or_are_said() {
+    let mut rows: Rows = vec![row!["Date", "Visitors", "Tours"]];
+    for day in 1..=14_u8 {
+        let visitors: Put = match day {
+            5 => "closed".into(),
+            9 => Put::Nothing,
+            12 => Put::Formula("=1/0", "#DIV/0!"),
+            _ => (120 + i32::from(day) * 13 % 50).into(),
+        };
+        rows.push(vec![Put::Date(2025, 7, day), visitors, (i32::from(day) % 4).into()]);
+    }
+    rows.push(row!["Note: lift repaired on the 8th"]);
+    let moments = "Museum!A2:A15";
+    let survey = check(
+        &book("Museum", rows),
+        &[marked("Visitors", "Museum!B2:B15", moments, 14, 3, ""), marked("Tours", "Museum!C2:C15", moments, 14, 0, "")],
+    );
+    assert_eq!(survey.indicators[0].understood.missing[0].text, "closed");
+    assert!(says(&survey.remarks, &["Row 16 of the sheet Museum", "no moment"]));
+}

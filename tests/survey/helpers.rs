@@ -1,5 +1,6 @@
 //! Workbooks are drawn row by row; what was found is compared with what a person marked.
 
+use risefall::workbook::PlanRow;
 use risefall::workbook::survey::{self, Cells, Error, Survey};
 use rust_xlsxwriter::{ExcelDateTime, Format as Look, Workbook, Worksheet};
 
@@ -142,10 +143,25 @@ pub fn found(survey: &Survey) -> Vec<Marked> {
         .collect()
 }
 
-/// Surveys a workbook and compares what was found with what a person marked.
+/// Surveys a workbook and compares what was found with what a person marked. What was found must also be what a row of the
+/// plan with the same references leads to.
 pub fn check(bytes: &[u8], expected: &[Marked]) -> Survey {
-    let survey = survey(bytes);
+    let cells = cells(bytes);
+    let survey = survey::survey(&cells);
     assert_eq!(found(&survey), expected, "remarks: {:#?}", survey.remarks);
+    let text = |range: Option<risefall::workbook::Range>| range.map(|range| range.to_string()).unwrap_or_default();
+    for indicator in &survey.indicators {
+        let row = PlanRow {
+            indicator: indicator.series.name.clone(),
+            cells: text(indicator.place.range()),
+            moments: text(indicator.place.moments_range()),
+            names: text(indicator.place.names_range()),
+            ..PlanRow::default()
+        };
+        let stated = survey::indicator_at(&cells, &row).unwrap();
+        assert_eq!((&stated.place.rows, &stated.series.moments), (&indicator.place.rows, &indicator.series.moments), "{row:?}");
+        assert_eq!((&stated.series.values, &stated.series.scale), (&indicator.series.values, &indicator.series.scale), "{row:?}");
+    }
     survey
 }
 

@@ -53,15 +53,15 @@ fn stands_beside(left: &Table, right: &Table) -> bool {
 
 fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut Survey) {
     let sheet = &view.sheet.name;
+    if table.is_across() {
+        survey.remarks.push(format!(
+            "{} has its moments side by side; put one row a moment and one column an indicator to have it judged.",
+            of_rows(table, sheet)
+        ));
+        return;
+    }
     let moments = match rows_are(view, table) {
         RowsAre::Moments(column) => Some(column),
-        _ if table.is_across() => {
-            survey.remarks.push(format!(
-                "{} has its moments side by side; put one row a moment and one column an indicator to have it judged.",
-                of_rows(table, sheet)
-            ));
-            return;
-        }
         RowsAre::Things(column) => {
             if table.columns.iter().any(|column| column.look.mostly() == Mostly::Numbers) {
                 let first = view.cell(table.rows.0, column).quote();

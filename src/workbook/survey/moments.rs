@@ -6,11 +6,12 @@ use std::sync::Arc;
 use jiff::civil::DateTime;
 
 use super::cells::Packed;
+use super::kind::Kind;
 use super::table::is_year;
 use super::view::View;
-use crate::reading::moment::MomentError;
 use crate::reading::moment::cycle::{Cycle, cycle_of_word};
 use crate::reading::moment::period::month_number;
+use crate::reading::moment::{MomentError, MomentKind};
 use crate::reading::{Cell, Moments};
 use crate::workbook::indicator::{Place, Rows};
 use crate::workbook::reference::{CellRef, column_letters};
@@ -164,6 +165,15 @@ impl Timeline {
             }
         };
         let mut moments = read;
+        if moments.kind() == MomentKind::Label
+            && let Some(&row) = rows.first()
+            && view.kind(row, moments_column) == Kind::Period
+        {
+            let label = moments.label(0);
+            remarks.push(format!(
+                "Moments such as `{label}` can be read in several ways; the rows were taken in the order in which they stand."
+            ));
+        }
         if moments.newest_first() || runs_backwards(&moments) {
             remarks.push("The newest reading stands on top; the readings were taken from the bottom up.".to_owned());
             moments = moments.reversed();

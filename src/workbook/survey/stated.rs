@@ -2,7 +2,7 @@
 
 use super::cells::Cells;
 use super::indicator::{Named, indicator};
-use super::kind::Kinds;
+use super::kind::{Kind, Kinds};
 use super::moments::Timeline;
 use super::rows::{Labels, readings};
 use super::unit::split_unit;
@@ -65,10 +65,8 @@ pub fn indicator_at(cells: &Cells, row: &PlanRow) -> Result<Indicator, StatedErr
     let heading = rows.0.checked_sub(1).map(|row| CellRef { row, column });
     let (kept, cell) = match names {
         Some(names) => {
-            let value = heading.map(|at| cells.cell(sheet, at.row, at.column).quote()).unwrap_or_default();
-            let rows: Vec<u32> = (rows.0..=rows.1)
-                .filter(|&at| is_named(&cells.cell(sheet, at, names).quote(), row.indicator.trim(), &value))
-                .collect();
+            let rows: Vec<u32> =
+                (rows.0..=rows.1).filter(|&at| is_named(&cells.cell(sheet, at, names).quote(), row.indicator.trim())).collect();
             let Some(&first) = rows.first() else {
                 return Err(StatedError::Name { names: row.names.clone(), name: row.indicator.clone() });
             };
@@ -79,8 +77,10 @@ pub fn indicator_at(cells: &Cells, row: &PlanRow) -> Result<Indicator, StatedErr
     let timeline = Timeline::of(view, moments, kept);
     let cell = cell.filter(|_| names.is_some() || !matches!(timeline.rows, Rows::Listed(_)));
     let grades = if row.grades.trim().is_empty() { None } else { Some(Grades::parse(&row.grades)?) };
-    let header = heading.map(|at| cells.cell(sheet, at.row, at.column).quote()).unwrap_or_default();
-    let named = Named { name: row.indicator.trim().to_owned(), unit: split_unit(&header).1, cell };
+    // Above part of a column, and in a long table, stands another reading.
+    let unit = heading.filter(|at| names.is_none() && view.kind(at.row, at.column) == Kind::Word);
+    let unit = unit.and_then(|at| split_unit(view.text(at.row, at.column)?).1);
+    let named = Named { name: row.indicator.trim().to_owned(), unit, cell };
     Ok(indicator(view, column, &timeline, named, grades.as_ref()))
 }
 
@@ -92,10 +92,8 @@ fn rows_of_readings(view: View<'_>, column: u32, moments: Option<u32>, (first, l
     }
 }
 
-/// Whether a name in a long table is the wanted one: as it stands, without its unit, or with the heading of its values.
-fn is_named(text: &str, wanted: &str, value: &str) -> bool {
-    let (text, wanted, value) = (text.to_lowercase(), wanted.to_lowercase(), value.to_lowercase());
-    text == wanted
-        || split_unit(&text).0 == wanted
-        || wanted.strip_prefix(&text).and_then(|rest| rest.strip_prefix(": ")) == Some(split_unit(&value).0.as_str())
+/// Whether a name in a long table is the wanted one: as it stands, without its unit, or before the heading of its values.
+fn is_named(text: &str, wanted: &str) -> bool {
+    let (text, wanted) = (text.to_lowercase(), wanted.to_lowercase());
+    text == wanted || split_unit(&text).0 == wanted || wanted.strip_prefix(&text).is_some_and(|heading| heading.starts_with(": "))
 }
