@@ -95,6 +95,23 @@ fn headings_parted_from_the_readings_by_a_blank_row() {
 }
 
 #[test]
+fn fields_and_notes_above_a_table_are_no_headings() {
+    let mut rows: Rows = vec![
+        row!["Kept by:", "", "Ward sister on duty", ""],
+        row!["* see the guideline", "", "", "* in mmHg"],
+        row!["Day", "Systolic", "Diastolic", "VisitNo"],
+    ];
+    rows.extend((1..=8_i32).map(|day| row![day, 130 + day * 7 % 12, 80 + day * 5 % 9, 4_101 + day * 3]));
+    check(
+        &book("Sheet", rows),
+        &[
+            marked("Systolic", "Sheet!B4:B11", "Sheet!A4:A11", 8, 0, ""),
+            marked("Diastolic", "Sheet!C4:C11", "Sheet!A4:A11", 8, 0, ""),
+        ],
+    );
+}
+
+#[test]
 fn groups_of_headings_without_repeated_names() {
     let mut rows: Rows = vec![row!["", "Rooms", "", "Restaurant", ""], row!["Week", "Sold", "Rate (€)", "Covers", "Bill (€)"]];
     for week in 7..=18_i32 {

@@ -67,7 +67,7 @@ fn numbers(view: View<'_>, column: &Column, rows: &[u32], dated: bool, is_first:
     }
     let Some(course) = Course::of(view, column.column, rows.iter().copied()) else { return Role::Readings };
     let several = course.count() >= 3;
-    if codes && several && course.is_whole() {
+    if codes && course.is_whole() {
         return left_out("its numbers name something");
     }
     if dated && calendar && course.is_whole() && (course.is_years() || course.is_within(0.0, 366.0)) {

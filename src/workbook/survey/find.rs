@@ -12,7 +12,8 @@ use super::rows::{Labels, RowsAre, readings, rows_are, without_rows_to_come};
 use super::table::{Column, Table, tables};
 use super::view::{Mostly, View};
 use super::words;
-use crate::workbook::indicator::Indicator;
+use crate::reading::Missing;
+use crate::workbook::indicator::{Indicator, Rows};
 use crate::workbook::reference::column_letters;
 
 /// What was found in a workbook.
@@ -124,7 +125,7 @@ fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut S
                 for column in &columns {
                     let named = in_group(&group.name, names, column, columns.len());
                     let made = indicator(view, column.column, &timeline, Named { cell: Some(group.cell), ..named }, None);
-                    if made.series.count_present() >= 2 || !made.understood.grades_assumed && made.series.len() >= 2 {
+                    if has_readings(&made) {
                         survey.indicators.push(made);
                     }
                 }
@@ -135,7 +136,7 @@ fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut S
                 Some(timeline) => timeline,
                 None => Timeline::of(view, moments, found.rows),
             };
-            let several_parts = matches!(timeline.rows, crate::workbook::indicator::Rows::Listed(_));
+            let several_parts = matches!(timeline.rows, Rows::Listed(_));
             for column in &columns {
                 let heading = &column.heading;
                 let name = match heading.name.as_str() {
@@ -145,7 +146,12 @@ fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut S
                 // Listed rows with the cell of a name are those of a long table.
                 let cell = heading.cell.filter(|_| !several_parts);
                 let named = Named { name, unit: heading.unit.clone(), cell };
-                survey.indicators.push(indicator(view, column.column, &timeline, named, None));
+                let made = indicator(view, column.column, &timeline, named, None);
+                if has_readings(&made) {
+                    survey.indicators.push(made);
+                } else {
+                    found.remarks.push(format!("{} was left out: it has fewer than two readings.", of_column(column, sheet)));
+                }
             }
         }
     }
@@ -154,6 +160,12 @@ fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut S
         made.remarks.extend(sum.map(|(_, remark)| remark.clone()));
     }
     survey.remarks.append(&mut found.remarks);
+}
+
+/// Whether there are two readings at least, be they words whose order is still to be stated.
+fn has_readings(made: &Indicator) -> bool {
+    let words = made.understood.missing.iter().filter(|reading| reading.why == Missing::NotUnderstood).count();
+    made.series.count_present() + words >= 2
 }
 
 /// What an indicator of a long table is called: by its name alone, if its column says no more than that there are values.

@@ -28,6 +28,11 @@ fn text(view: View<'_>, row: u32, column: u32) -> String {
     view.cell(row, column).quote().split_whitespace().collect::<Vec<_>>().join(" ")
 }
 
+/// Whether a text above a table is a note, or the label of a field such as `Kept by:`, rather than a heading.
+fn is_note(text: &str) -> bool {
+    text.len() > LONGEST_NAME || text.ends_with(':') || text.starts_with('*')
+}
+
 /// The rows above the readings that head them, from the top. A row with a single text at the left above a wider table is a title, and
 /// one with more numbers than words belongs to something else.
 pub fn heading_rows(view: View<'_>, block: Block, first: u32) -> Vec<u32> {
@@ -40,7 +45,7 @@ pub fn heading_rows(view: View<'_>, block: Block, first: u32) -> Vec<u32> {
             continue;
         }
         let title = filled.len() < 2 && filled.first().is_none_or(|&column| column == block.left) && !single_column;
-        let note = filled.iter().any(|&column| view.text(row, column).is_some_and(|text| text.len() > LONGEST_NAME));
+        let note = filled.iter().any(|&column| view.text(row, column).is_some_and(is_note));
         let data = filled.iter().filter(|&&column| view.kind(row, column).is_data()).count();
         if title || note || data * 2 > filled.len() && !rows.is_empty() {
             break;

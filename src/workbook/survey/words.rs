@@ -156,6 +156,10 @@ pub fn names_things(header: &str) -> bool {
 
 /// Whether a header names numbers that are names: `Ticket no.`, `ID`, `Phone`.
 pub fn names_codes(header: &str) -> bool {
+    let run_together = ["No", "Nr", "ID", "Id"].iter().filter_map(|tail| header.strip_suffix(tail));
+    if run_together.into_iter().any(|rest| rest.ends_with(char::is_lowercase)) {
+        return true;
+    }
     let header = plain(header);
     among(CODES, &header) || among("id, no, nr, code, phone, barcode", last_word(&header))
 }
