@@ -1,6 +1,9 @@
 //! When readings were taken: dates, period labels, numbers, or positions alone.
 
-use jiff::civil::{Date, DateTime, ISOWeekDate, Weekday};
+pub mod cycle;
+pub mod period;
+
+use jiff::civil::{Date, DateTime};
 
 use super::{Blocks, Cell};
 
@@ -87,20 +90,39 @@ impl Moments {
             return Ok(Moments::numbers(numbers));
         }
         let labels: Vec<Box<str>> = cells.iter().map(|cell| cell.quote().into_boxed_str()).collect();
-        let order = day_order(cells);
-        let period = |cell: &Cell| match cell {
+        if let Some(axis) = all(cells, |cell| period::pair_of_years(&cell.quote())) {
+            return Ok(Moments { kind: MomentKind::Number, axis, labels, count });
+        }
+        let forms = period::Forms::of(cells);
+        let start = |cell: &Cell| match cell {
             Cell::Date(date) => Some(*date),
-            Cell::Text(text) => period_start(text, order),
+            Cell::Text(text) => period::start(text, forms),
             _ => None,
         };
-        if let Some(starts) = all(cells, period) {
+        if let Some(starts) = all(cells, start) {
             let axis = starts.iter().map(|&start| days(start)).collect();
             return Ok(Moments { kind: MomentKind::Date, axis, labels, count });
         }
-        if let Some(axis) = all(cells, |cell| numbered_period(&cell.quote())) {
-            return Ok(Moments { kind: MomentKind::Number, axis, labels, count });
+        let month = |cell: &Cell| period::month_number(&cell.quote()).map(f64::from);
+        if let Some(axis) = all(cells, |cell| period::numbered(&cell.quote())).or_else(|| all(cells, month)) {
+            return Ok(Moments { kind: MomentKind::Number, axis, labels, count }.counted_on());
         }
         Ok(Moments { kind: MomentKind::Label, axis: Vec::new(), labels, count })
+    }
+
+    /// Weeks, months or quarters without a year, counted on where they begin again with a new year: after week 52 comes
+    /// 53, not 1. Other moments stay as they are.
+    ///
+    /// Periods written as text are always counted on. Plain numbers are so only by this method: it is for a single series
+    /// whose numbers are known to be weeks or months.
+    #[must_use]
+    pub fn counted_on(mut self) -> Self {
+        if self.kind == MomentKind::Number
+            && let Some(axis) = cycle::cycle(&self.labels, &self.axis).and_then(|cycle| cycle.counted_on(&self.axis))
+        {
+            self.axis = axis;
+        }
+        self
     }
 
     /// What the moments are.
@@ -209,106 +231,6 @@ fn date_of(days: f64) -> Option<DateTime> {
     EPOCH.to_datetime(jiff::civil::Time::midnight()).checked_add(jiff::SignedDuration::from_secs(seconds)).ok()
 }
 
-/// Whether `03/04/2025` is the 3rd of April or March the 4th.
-#[derive(Clone, Copy, PartialEq, Eq)]
-enum DayOrder {
-    DayFirst,
-    MonthFirst,
-    Unknown,
-}
-
-/// A column of dates with slashes tells its own order as soon as one number exceeds twelve.
-fn day_order(cells: &[Cell]) -> DayOrder {
-    for cell in cells {
-        let Cell::Text(text) = cell else { continue };
-        let parts: Vec<u32> = text.split('/').map_while(|part| part.trim().parse().ok()).collect();
-        match parts[..] {
-            [day, month, _] if day > 12 && day <= 31 && month <= 12 => return DayOrder::DayFirst,
-            [month, day, _] if day > 12 && day <= 31 && month <= 12 => return DayOrder::MonthFirst,
-            _ => {}
-        }
-    }
-    DayOrder::Unknown
-}
-
-const MONTHS: [&str; 12] =
-    ["january", "february", "march", "april", "may", "june", "july", "august", "september", "october", "november", "december"];
-
-/// The number of a month's name in full or by at least its first three letters.
-pub fn month_number(word: &str) -> Option<i8> {
-    let word = word.trim_end_matches('.').to_lowercase();
-    let found =
-        MONTHS.iter().position(|month| word.len() >= 3 && month.starts_with(&word) || word == "sept" && *month == "september");
-    found.map(|index| index as i8 + 1)
-}
-
-/// The start of a date or calendar period written as text.
-fn period_start(text: &str, order: DayOrder) -> Option<DateTime> {
-    let text = text.trim();
-    if let Ok(date) = text.parse::<DateTime>() {
-        return Some(date);
-    }
-    let at_midnight = |date: Date| date.to_datetime(jiff::civil::Time::midnight());
-    date_or_period(text, order).map(at_midnight)
-}
-
-fn date_or_period(text: &str, order: DayOrder) -> Option<Date> {
-    if let Ok(date) = text.parse::<Date>() {
-        return Some(date);
-    }
-    let words: Vec<&str> =
-        text.split(|c: char| c.is_whitespace() || "-/.,_".contains(c)).filter(|word| !word.is_empty()).collect();
-    let year = |word: &str| (word.len() == 4).then(|| word.parse::<i16>().ok()).flatten();
-    let day = |word: &str| word.trim_end_matches(|c: char| c.is_alphabetic()).parse::<i8>().ok();
-    let after = |word: &str, letter: char| {
-        word.strip_prefix([letter, letter.to_ascii_lowercase()]).and_then(|rest| rest.parse::<i8>().ok())
-    };
-    match words[..] {
-        [a, b] => {
-            let (y, other) = year(a).map(|y| (y, b)).or_else(|| year(b).map(|y| (y, a)))?;
-            if let Some(week) = after(other, 'W') {
-                return ISOWeekDate::new(y, week, Weekday::Monday).ok().map(|week| week.date());
-            }
-            if let Some(quarter) = after(other, 'Q').filter(|quarter| (1..=4).contains(quarter)) {
-                return Date::new(y, quarter * 3 - 2, 1).ok();
-            }
-            let month = month_number(other).or_else(|| other.parse().ok())?;
-            Date::new(y, month, 1).ok()
-        }
-        [a, b, c] => {
-            if let Some(y) = year(a) {
-                return Date::new(y, month_number(b).or_else(|| b.parse().ok())?, day(c)?).ok();
-            }
-            let y = year(c)?;
-            if let Some(month) = month_number(b) {
-                return Date::new(y, month, day(a)?).ok();
-            }
-            if let Some(month) = month_number(a) {
-                return Date::new(y, month, day(b)?).ok();
-            }
-            let (first, second) = (a.parse().ok()?, b.parse().ok()?);
-            let day_first = text.contains('.') || order == DayOrder::DayFirst;
-            match (day_first, order) {
-                (true, _) => Date::new(y, second, first).ok(),
-                (false, DayOrder::MonthFirst) => Date::new(y, first, second).ok(),
-                _ => None,
-            }
-        }
-        _ => None,
-    }
-}
-
-/// The number in `Week 7`, `W7`, `Month 3`, `Day 12`: one word, one whole number.
-fn numbered_period(text: &str) -> Option<f64> {
-    let text = text.trim();
-    let digits = text.find(|c: char| c.is_ascii_digit())?;
-    let (word, number) = text.split_at(digits);
-    if !word.trim().chars().all(|c| c.is_alphabetic() || c == '.') {
-        return None;
-    }
-    number.parse::<u32>().ok().map(f64::from)
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -347,6 +269,16 @@ mod tests {
         let weeks = moments(&["Week 7", "Week 9"]);
         assert_eq!((weeks.kind(), weeks.axis(1), weeks.label(1)), (MomentKind::Number, 9.0, "Week 9".into()));
         assert_eq!(moments(&["spring", "autumn"]).kind(), MomentKind::Label);
+    }
+
+    #[test]
+    fn periods_without_a_year_are_counted_on_into_the_next() {
+        for labels in [["Nov", "Dec", "Jan"], ["KW 51", "KW 52", "KW 1"], ["Q3", "Q4", "Q1"], ["2019/20", "2020/21", "2021/22"]] {
+            let read = moments(&labels);
+            assert_eq!((read.kind(), read.axis(2) - read.axis(0)), (MomentKind::Number, 2.0), "{labels:?}");
+            assert!(read.check_order(false, None).is_ok(), "{labels:?}");
+        }
+        assert!(moments(&["March", "January", "February"]).check_order(false, None).is_err());
     }
 
     #[test]

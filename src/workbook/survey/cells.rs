@@ -33,6 +33,8 @@ pub struct SheetCells {
     columns: Vec<Vec<Segment>>,
     /// The days of dates and durations, which slots refer to.
     days: Vec<f64>,
+    /// How many cells of each column are shown as percentages.
+    percentages: Vec<u32>,
 }
 
 struct Segment {
@@ -116,6 +118,16 @@ impl Cells {
         segments.push(Segment { first: row, cells: vec![slot] });
     }
 
+    /// Counts a cell of the sheet begun last as one that is shown as a percentage.
+    pub fn note_percentage(&mut self, column: u32) {
+        let Some(sheet) = self.sheets.last_mut() else { return };
+        let column = column as usize;
+        if sheet.percentages.len() <= column {
+            sheet.percentages.resize(column + 1, 0);
+        }
+        sheet.percentages[column] += 1;
+    }
+
     /// A sheet by name, upper and lower case not told apart.
     pub fn sheet(&self, name: &str) -> Option<&SheetCells> {
         self.sheets.iter().find(|sheet| sheet.name == name).or_else(|| {
@@ -140,7 +152,8 @@ impl Cells {
         }
     }
 
-    fn text(&self, number: u32) -> &str {
+    /// A text by its number.
+    pub fn text(&self, number: u32) -> &str {
         self.texts.get(number as usize).map_or("", |text| text)
     }
 
@@ -216,6 +229,11 @@ impl SheetCells {
     /// How many columns there are, blank ones in between included.
     pub fn width(&self) -> u32 {
         self.columns.len() as u32
+    }
+
+    /// How many cells of a column are shown as percentages.
+    pub fn percentages(&self, column: u32) -> usize {
+        self.percentages.get(column as usize).map_or(0, |count| *count as usize)
     }
 
     /// A cell; empty where there is none.

@@ -14,9 +14,9 @@ pub enum Error {
     /// The workbook is encrypted.
     #[error("the workbook is encrypted; save it without a password and send that")]
     Encrypted,
-    /// The workbook cannot be read.
-    #[error("the workbook cannot be read ({0}); open it in the spreadsheet program, save it anew, and send that")]
-    Unreadable(String),
+    /// The cells cannot be read; what the file is.
+    #[error("the cells of the {0} cannot be read; open it in the spreadsheet program, save it anew, and send that")]
+    Unreadable(&'static str),
     /// There are more cells than are accepted.
     #[error("the workbook has more than {0} filled cells, which is more than is accepted")]
     TooManyCells(usize),

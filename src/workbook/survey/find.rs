@@ -1,14 +1,20 @@
-//! The indicators of a workbook: one a column of a table, or one a name in a long table.
+//! The indicators of a workbook: one a column of a table, or one a name and column in a long table.
 
-use std::collections::HashSet;
-use std::sync::Arc;
+use std::collections::HashMap;
 
-use super::cells::{Cells, Packed, SheetCells};
+use super::cells::Cells;
+use super::column::{Role, role};
+use super::indicator::{Named, indicator};
+use super::kind::Kinds;
+use super::long::groups;
+use super::moments::{Companion, Timeline};
+use super::rows::{Labels, RowsAre, readings, rows_are, without_rows_to_come};
 use super::table::{Column, Table, tables};
+use super::view::{Mostly, View};
 use super::words;
-use crate::reading::{Cell, Missing, Moments, Scale, Series, Understood, Value, understand};
-use crate::workbook::indicator::{Indicator, Place, Rows};
-use crate::workbook::reference::CellRef;
+use crate::reading::Missing;
+use crate::workbook::indicator::{Indicator, Rows};
+use crate::workbook::reference::column_letters;
 
 /// What was found in a workbook.
 #[derive(Default)]
@@ -19,277 +25,225 @@ pub struct Survey {
     pub remarks: Vec<String>,
 }
 
-/// The most different names that a long table may have.
-const MOST_NAMES: usize = 200;
-
 /// Finds the indicators of a workbook.
 pub fn survey(cells: &Cells) -> Survey {
     let mut survey = Survey { remarks: cells.remarks.clone(), ..Survey::default() };
+    let kinds = Kinds::default();
     for sheet in &cells.sheets {
+        let view = View { cells, sheet, kinds: &kinds };
         let before = survey.indicators.len();
-        let tables = tables(cells, sheet);
-        for table in &tables {
-            match long_form(cells, sheet, table) {
-                Some((names, values)) => find_long(cells, sheet, table, names, values, &mut survey),
-                None => find_wide(cells, sheet, table, &mut survey),
-            }
+        let tables = tables(view);
+        for (index, table) in tables.iter().enumerate() {
+            let beside = tables[..index].iter().rev().find(|left| stands_beside(left, table));
+            look_at(view, table, beside, &mut survey);
         }
         if survey.indicators.len() == before {
             let seen = if tables.is_empty() { "no table of readings was found" } else { "its tables hold no column of readings" };
             survey.remarks.push(format!("Nothing to judge on the sheet {}: {seen}.", sheet.name));
         }
     }
+    tell_apart(&mut survey.indicators);
     survey
 }
 
-/// What the cells of a column look like.
-struct Look {
-    filled: usize,
-    numbers: usize,
-    dates: usize,
-    words: usize,
-    different_words: usize,
+/// Whether a table stands to the left of another, in the same rows, with only blank columns between them.
+fn stands_beside(left: &Table, right: &Table) -> bool {
+    let (Some(end), Some(start)) = (left.columns.last(), right.columns.first()) else { return false };
+    end.column < start.column && left.rows.0 == right.rows.0 && left.rows.1 >= right.rows.1
 }
 
-fn look(cells: &Cells, sheet: &SheetCells, column: u32, rows: (u32, u32)) -> Look {
-    let mut look = Look { filled: 0, numbers: 0, dates: 0, words: 0, different_words: 0 };
-    let mut different = HashSet::new();
-    for (_, cell) in sheet.filled(column, rows.0, rows.1) {
-        look.filled += 1;
-        match cell {
-            Packed::Number(_) | Packed::Duration(_) | Packed::Truth(_) | Packed::Error(_) => look.numbers += 1,
-            Packed::Date(_) => look.dates += 1,
-            Packed::Empty => {}
-            Packed::Text(text) => {
-                let value = understand(&[cells.unpack(cell)], None);
-                let numeric = matches!(&value, Ok((values, _, understood)) if understood.grades.is_none() && !matches!(values[0], Value::Missing(Missing::NotUnderstood)));
-                if numeric {
-                    look.numbers += 1;
-                } else {
-                    look.words += 1;
-                    different.insert(text);
-                }
-            }
-        }
-    }
-    look.different_words = different.len();
-    look
-}
-
-/// The columns of names and of values, if a table is in long form: moment, name, value, each moment and name once.
-fn long_form(cells: &Cells, sheet: &SheetCells, table: &Table) -> Option<(usize, usize)> {
-    let moments = table.moments?;
-    let looks: Vec<Look> = table.columns.iter().map(|column| look(cells, sheet, column.column, table.rows)).collect();
-    let rows = (table.rows.1 - table.rows.0 + 1) as usize;
-    let others = |index: &usize| *index != moments;
-    let values: Vec<usize> = (0..looks.len())
-        .filter(others)
-        .filter(|&index| {
-            looks[index].numbers * 10 >= looks[index].filled * 6
-                && looks[index].numbers >= 2
-                && !words::is_label_heading(&table.columns[index].heading)
-        })
-        .collect();
-    let [values] = values[..] else { return None };
-    let names = (0..looks.len()).filter(others).find(|&index| {
-        let look = &looks[index];
-        let repeated = look.different_words >= 2 && look.different_words <= MOST_NAMES && look.different_words * 2 <= rows;
-        look.words == rows && repeated && !words::is_grade_heading(&table.columns[index].heading)
-    })?;
-    let mut seen = HashSet::new();
-    let once = (table.rows.0..=table.rows.1).all(|row| {
-        let moment = cells.cell(sheet, row, table.columns[moments].column).quote();
-        seen.insert((moment, cells.cell(sheet, row, table.columns[names].column).quote()))
-    });
-    let headed = words::is_indicator_heading(&table.columns[names].heading);
-    (once || headed).then_some((names, values))
-}
-
-fn find_long(cells: &Cells, sheet: &SheetCells, table: &Table, names: usize, values: usize, survey: &mut Survey) {
-    let (names, values) = (&table.columns[names], &table.columns[values]);
-    let mut listed: Vec<(String, Vec<u32>)> = Vec::new();
-    for row in table.rows.0..=table.rows.1 {
-        let name = cells.cell(sheet, row, names.column).quote();
-        match listed.iter_mut().find(|(known, _)| *known == name) {
-            _ if name.is_empty() => {}
-            Some((_, rows)) => rows.push(row),
-            None => listed.push((name, vec![row])),
-        }
-    }
-    let moments = table.moments.map(|index| table.columns[index].column);
-    let (_, unit) = words::name_and_unit(&values.heading);
-    for (name, rows) in listed {
-        let header = rows.first().map(|&row| CellRef { row, column: names.column });
-        let (name, own_unit) = words::name_and_unit(&name);
-        let place = Place { sheet: sheet.name.clone(), column: values.column, moments, rows: Rows::Listed(rows), header };
-        let moments = read_moments(cells, sheet, &place);
-        add(cells, sheet, place, name, own_unit.or_else(|| unit.clone()), moments, survey);
-    }
-}
-
-fn find_wide(cells: &Cells, sheet: &SheetCells, table: &Table, survey: &mut Survey) {
-    let count = table.rows.1 - table.rows.0 + 1;
-    let moments_column = table.moments.map(|index| table.columns[index].column);
-    let down = Rows::Down { first: table.rows.0, count };
-    let as_place =
-        |column: u32, rows: Rows| Place { sheet: sheet.name.clone(), column, moments: moments_column, rows, header: None };
-    let mut moments = read_moments(cells, sheet, &as_place(0, down.clone()));
-    let mut rows = down;
-    if let Ok(read) = &moments
-        && read.newest_first()
-    {
-        rows = Rows::Up { first: table.rows.1, count };
-        moments = Ok(Arc::new(Moments::clone(read).reversed()));
-    } else if let Ok(read) = &moments
-        && let Some(named) = names_its_rows(cells, sheet, table)
-        && read.check_order(true, None).is_err()
-    {
-        let letters = crate::workbook::reference::column_letters(named);
-        let (first, last) = (table.rows.0 + 1, table.rows.1 + 1);
+fn look_at(view: View<'_>, table: &Table, beside: Option<&Table>, survey: &mut Survey) {
+    let sheet = &view.sheet.name;
+    if table.is_across() {
         survey.remarks.push(format!(
-            "Rows {first} to {last} of the sheet {} were left out: column {letters} names each of them, and their dates are in no order.",
-            sheet.name
+            "{} has its moments side by side; put one row a moment and one column an indicator to have it judged.",
+            of_rows(table, sheet)
         ));
         return;
     }
-    for (_, column) in table.columns.iter().enumerate().filter(|(index, _)| Some(*index) != table.moments) {
-        let look = look(cells, sheet, column.column, table.rows);
-        match left_out(&look, column, cells, sheet, table) {
-            Some(why) => {
-                if let Some(why) = why {
-                    let heading =
-                        if column.heading.is_empty() { "without a heading".to_owned() } else { format!("`{}`", column.heading) };
-                    let letters = crate::workbook::reference::column_letters(column.column);
-                    survey.remarks.push(format!("Column {letters} of the sheet {}, {heading}, was left out: {why}.", sheet.name));
+    let moments = match rows_are(view, table) {
+        RowsAre::Moments(column) => Some(column),
+        RowsAre::Things(column) => {
+            if table.columns.iter().any(|column| column.look.mostly() == Mostly::Numbers) {
+                let first = view.cell(table.rows.0, column).quote();
+                survey.remarks.push(format!(
+                    "{} names things (`{first}` is the first), not moments, so nothing in it was taken as readings over time.",
+                    of_rows(table, sheet)
+                ));
+            }
+            return;
+        }
+        // A blank column in between does not take the moments away.
+        RowsAre::Positions => beside.and_then(|left| match rows_are(view, left) {
+            RowsAre::Moments(column) => Some(column),
+            _ => None,
+        }),
+    };
+    let mut found = readings(view, Labels::of(table, moments), table.rows);
+    let companion = moments.and_then(|column| Companion::of(view, column, &found.rows));
+    let times: Vec<u32> = moments.into_iter().chain(companion.map(Companion::column)).collect();
+    let mut columns: Vec<&Column> = Vec::new();
+    let mut left_out: Vec<(u32, String)> = Vec::new();
+    for (index, column) in table.columns.iter().enumerate().filter(|(_, column)| !times.contains(&column.column)) {
+        let why = match role(view, column, &found.rows, moments.is_some(), index == 0) {
+            Role::Readings if column.look.present() < 2 => "it has fewer than two readings",
+            Role::Readings => {
+                columns.push(column);
+                continue;
+            }
+            Role::LeftOut(Some(why)) => why,
+            Role::LeftOut(None) => continue,
+        };
+        left_out.push((column.column, format!("{} was left out: {why}.", of_column(column, sheet))));
+    }
+    let numbers: Vec<u32> = columns.iter().map(|column| column.column).collect();
+    let no_names: Vec<u32> = times.iter().chain(&numbers).copied().collect();
+    let long = moments.and_then(|_| groups(view, table, &times, &no_names, &found.rows));
+    let names = long.as_ref().map(|(names, _)| *names);
+    let said = left_out.into_iter().filter(|(column, _)| Some(*column) != names);
+    found.remarks.extend(said.map(|(_, remark)| remark));
+    let timeline = if long.is_none() { Some(Timeline::of(view, moments, found.rows.clone())) } else { None };
+    if let Some(named) = names_its_rows(view, table, timeline.as_ref()) {
+        survey.remarks.push(format!(
+            "{} was left out: column {} names each of its rows, and their dates are in no order.",
+            of_rows(table, sheet),
+            column_letters(named)
+        ));
+        return;
+    }
+    let before = found.rows.len();
+    without_rows_to_come(view, &numbers, &mut found);
+    let whole = before == found.rows.len();
+    let sums: Vec<(u32, String)> = columns.iter().filter_map(|column| sum_of(view, column, &numbers, &found.rows)).collect();
+    let first_new = survey.indicators.len();
+    match (long, timeline) {
+        (Some((names, groups)), _) => {
+            let names = table.column(names).map(|column| column.heading.name.as_str()).unwrap_or_default();
+            for group in groups {
+                let rows = group.rows.into_iter().filter(|row| found.rows.binary_search(row).is_ok()).collect();
+                let timeline = Timeline::of(view, moments, rows);
+                for column in &columns {
+                    let named = in_group(&group.name, names, column, columns.len());
+                    let made = indicator(view, column.column, &timeline, Named { cell: Some(group.cell), ..named }, None);
+                    if has_readings(&made) {
+                        survey.indicators.push(made);
+                    }
                 }
             }
-            None => {
-                let (name, unit) = words::name_and_unit(&column.heading);
-                let header = column.heading_row.map(|row| CellRef { row, column: column.column });
-                let letters = crate::workbook::reference::column_letters(column.column);
-                let name = if name.is_empty() { format!("{} column {letters}", sheet.name) } else { name };
-                let place = Place { header, ..as_place(column.column, rows.clone()) };
-                add(cells, sheet, place, name, unit, moments.clone(), survey);
+        }
+        (None, timeline) => {
+            let timeline = match timeline.filter(|_| whole) {
+                Some(timeline) => timeline,
+                None => Timeline::of(view, moments, found.rows),
+            };
+            let several_parts = matches!(timeline.rows, Rows::Listed(_));
+            for column in &columns {
+                let heading = &column.heading;
+                let name = match heading.name.as_str() {
+                    "" => format!("{sheet} column {}", column_letters(column.column)),
+                    name => name.to_owned(),
+                };
+                // Listed rows with the cell of a name are those of a long table.
+                let cell = heading.cell.filter(|_| !several_parts);
+                let named = Named { name, unit: heading.unit.clone(), cell };
+                let made = indicator(view, column.column, &timeline, named, None);
+                if has_readings(&made) {
+                    survey.indicators.push(made);
+                } else {
+                    found.remarks.push(format!("{} was left out: it has fewer than two readings.", of_column(column, sheet)));
+                }
             }
         }
     }
+    for made in &mut survey.indicators[first_new..] {
+        let sum = sums.iter().find(|(column, _)| *column == made.place.column);
+        made.remarks.extend(sum.map(|(_, remark)| remark.clone()));
+    }
+    survey.remarks.append(&mut found.remarks);
 }
 
-/// The column whose words tell the rows of a table apart, as in a list of houses or machines rather than of weeks.
-fn names_its_rows(cells: &Cells, sheet: &SheetCells, table: &Table) -> Option<u32> {
-    let rows = (table.rows.1 - table.rows.0 + 1) as usize;
-    let others = table.columns.iter().enumerate().filter(|(index, _)| Some(*index) != table.moments);
-    let mut columns = others.map(|(_, column)| column.column);
-    columns.find(|&column| {
-        let look = look(cells, sheet, column, table.rows);
-        look.words == rows && look.different_words == rows
-    })
+/// Whether there are two readings at least, be they words whose order is still to be stated.
+fn has_readings(made: &Indicator) -> bool {
+    let words = made.understood.missing.iter().filter(|reading| reading.why == Missing::NotUnderstood).count();
+    made.series.count_present() + words >= 2
 }
 
-/// Whether a column is no indicator, and the reason if it is worth saying.
-fn left_out(look: &Look, column: &Column, cells: &Cells, sheet: &SheetCells, table: &Table) -> Option<Option<String>> {
-    if look.filled == 0 {
-        return Some(None);
+/// What an indicator of a long table is called: by its name alone, if its column says no more than that there are values.
+fn in_group(name: &str, names: &str, column: &Column, columns: usize) -> Named {
+    let heading = &column.heading;
+    let by_name_alone = columns == 1 && (words::names_values(&heading.name) || words::names_indicators(names));
+    let (short, own_unit) = super::unit::split_unit(name);
+    if by_name_alone {
+        Named { name: short, unit: own_unit.or_else(|| heading.unit.clone()), cell: None }
+    } else {
+        Named { name: format!("{name}: {}", heading.name), unit: heading.unit.clone(), cell: None }
     }
-    if column.heading.is_empty() && table.moments.is_none() {
-        return Some(Some("it has neither a heading nor dates beside it".into()));
+}
+
+/// The column whose words tell the rows of a table apart, if its dates are in no order: a list of houses or machines.
+fn names_its_rows(view: View<'_>, table: &Table, timeline: Option<&Timeline>) -> Option<u32> {
+    let timeline = timeline?;
+    timeline.column.filter(|_| timeline.moments.check_order(true, None).is_err())?;
+    let rows = table.rows.1 - table.rows.0 + 1;
+    let mut columns = table.columns.iter().filter(|column| Some(column.column) != timeline.column);
+    let names = columns.find(|column| {
+        let words = column.look.mostly() == Mostly::Words && column.look.filled() == rows;
+        words && super::long::distinct(view, column.column, table.rows.0..=table.rows.1) == rows as usize
+    });
+    names.map(|column| column.column)
+}
+
+/// Of a column headed as a total, which columns it adds up.
+fn sum_of(view: View<'_>, column: &Column, columns: &[u32], rows: &[u32]) -> Option<(u32, String)> {
+    let parts: Vec<u32> = columns.iter().copied().take_while(|&part| part < column.column).collect();
+    let (&first, &last) = (parts.first()?, parts.last()?);
+    if first == last || !words::names_total(&column.heading.name) {
+        return None;
     }
-    if look.dates * 2 > look.filled {
-        return Some(Some("it holds dates".into()));
-    }
-    if look.filled < 2 {
-        return Some(Some("it has fewer than two readings".into()));
-    }
-    if look.numbers * 10 >= look.filled * 6 {
-        if words::is_label_heading(&column.heading) || counts_rows(sheet, column, table) {
-            return Some(Some("it numbers or names the rows".into()));
+    let adds_up = |&row: &u32| {
+        let sum: f64 = parts.iter().filter_map(|&part| view.number(row, part)).sum();
+        view.number(row, column.column).is_some_and(|total| (total - sum).abs() <= 1e-9 * total.abs().max(1.0))
+    };
+    let (first, last) = (column_letters(first), column_letters(last));
+    let remark = format!("It is the sum of columns {first} to {last}, so its trend follows from theirs.");
+    rows.iter().all(adds_up).then_some((column.column, remark))
+}
+
+/// A column as a person names it.
+fn of_column(column: &Column, sheet: &str) -> String {
+    let heading = match column.heading.name.as_str() {
+        "" => "without a heading".to_owned(),
+        name => format!("`{name}`"),
+    };
+    format!("Column {} of the sheet {sheet}, {heading},", column_letters(column.column))
+}
+
+/// A table as a person names it.
+fn of_rows(table: &Table, sheet: &str) -> String {
+    format!("The table in rows {} to {} of the sheet {sheet}", table.rows.0 + 1, table.rows.1 + 1)
+}
+
+/// Indicators of the same name get their sheet's name added, and on the same sheet the place of their first reading. Those
+/// of long tables keep the names that stand in the cells.
+fn tell_apart(indicators: &mut [Indicator]) {
+    for with_sheet in [true, false] {
+        let mut same: HashMap<String, Vec<usize>> = HashMap::new();
+        for (index, indicator) in indicators.iter().enumerate() {
+            same.entry(indicator.series.name.to_lowercase()).or_default().push(index);
         }
-        return None;
+        for same in same.into_values().filter(|same| same.len() > 1) {
+            let one_sheet = same.iter().all(|&index| indicators[index].place.sheet == indicators[same[0]].place.sheet);
+            for index in same {
+                let made = &mut indicators[index];
+                if made.place.names_range().is_some() || made.series.is_empty() {
+                    continue;
+                }
+                let addition = match with_sheet && !one_sheet {
+                    true => made.place.sheet.clone(),
+                    false => made.place.cell(0).to_string(),
+                };
+                made.series.name = format!("{} ({addition})", made.series.name);
+            }
+        }
     }
-    if look.words * 10 < look.filled * 6 {
-        return Some(Some("it mixes numbers with words".into()));
-    }
-    let words: Vec<Cell> = sheet.filled(column.column, table.rows.0, table.rows.1).map(|(_, cell)| cells.unpack(cell)).collect();
-    let usual = matches!(understand(&words, None), Ok((_, Scale::Graded(_), _)));
-    let few = look.different_words <= 8 && look.different_words >= 2 && look.different_words * 3 <= look.words;
-    if usual && look.different_words >= 2 || few && words::is_grade_heading(&column.heading) {
-        return None;
-    }
-    Some(Some("it holds words; if they are grades, name the column and the grades in the plan".into()))
-}
-
-/// A first column of 1, 2, 3, ... only counts the rows.
-fn counts_rows(sheet: &SheetCells, column: &Column, table: &Table) -> bool {
-    let first = table.columns.first().is_some_and(|first| first.column == column.column);
-    first
-        && table.columns.len() > 1
-        && column.heading.len() <= 3
-        && sheet
-            .filled(column.column, table.rows.0, table.rows.1)
-            .enumerate()
-            .all(|(index, (_, cell))| cell == Packed::Number(index as f64 + 1.0))
-}
-
-/// The moments at a place; why there are none if they cannot be read.
-pub fn read_moments(cells: &Cells, sheet: &SheetCells, place: &Place) -> Result<Arc<Moments>, String> {
-    let count = place.rows.len();
-    let Some(column) = place.moments else { return Ok(Arc::new(Moments::positions(count))) };
-    let read: Vec<Cell> = (0..count).map(|index| cells.cell(sheet, place.rows.row(index), column)).collect();
-    match Moments::of_cells(&read) {
-        Ok(moments) => Ok(Arc::new(moments)),
-        Err(error) => Err(format!("{error}; positions stand in for the moments of {}", place.sheet)),
-    }
-}
-
-/// Makes an indicator of the cells at a place.
-pub fn indicator(
-    cells: &Cells,
-    sheet: &SheetCells,
-    place: Place,
-    (name, unit): (String, Option<String>),
-    grades: Option<&crate::reading::Grades>,
-    moments: Result<Arc<Moments>, String>,
-) -> Indicator {
-    let read: Vec<Cell> = (0..place.rows.len()).map(|index| cells.cell(sheet, place.rows.row(index), place.column)).collect();
-    let (values, scale, understood) = understand(&read, grades).unwrap_or_else(|_| words_without_order(&read));
-    let mut remarks = Vec::new();
-    if matches!(place.rows, Rows::Up { .. }) {
-        remarks.push("The newest reading stands on top; the readings were taken from the bottom up.".to_owned());
-    }
-    if understood.text_numbers > 0 {
-        remarks.push(format!("{} readings are numbers written as text.", understood.text_numbers));
-    }
-    if understood.grades_assumed {
-        let grades = understood.grades.as_ref().map(ToString::to_string).unwrap_or_default();
-        remarks.push(format!("The order of the grades was assumed: {grades}."));
-    }
-    let moments = moments.unwrap_or_else(|why| {
-        remarks.push(format!("{why}."));
-        Arc::new(Moments::positions(values.len()))
-    });
-    let is_text = |index: usize| matches!(read[index], Cell::Text(_)) && scale == Scale::Numeric && !values[index].is_missing();
-    let as_text = (0..read.len()).filter(|&index| is_text(index)).map(|index| index as u32).collect();
-    Indicator { series: Series { name, unit, scale, values, moments, blocks: None }, understood, place, as_text, remarks }
-}
-
-/// Words whose order nobody stated: no reading has a value until the grades are given.
-fn words_without_order(read: &[Cell]) -> (Vec<Value>, Scale, Understood) {
-    let missing = read.iter().enumerate().map(|(index, cell)| {
-        let why = if cell.is_empty() { Missing::Blank } else { Missing::NotUnderstood };
-        crate::reading::understand::MissingReading { index, why, text: cell.quote() }
-    });
-    let understood = Understood { readings: read.len(), missing: missing.collect(), ..Understood::default() };
-    (vec![Value::Missing(Missing::NotUnderstood); read.len()], Scale::Numeric, understood)
-}
-
-fn add(
-    cells: &Cells,
-    sheet: &SheetCells,
-    place: Place,
-    name: String,
-    unit: Option<String>,
-    moments: Result<Arc<Moments>, String>,
-    survey: &mut Survey,
-) {
-    survey.indicators.push(indicator(cells, sheet, place, (name, unit), None, moments));
 }

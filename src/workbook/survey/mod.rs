@@ -4,11 +4,22 @@
 //! references, and later questions all read from that store.
 
 mod cells;
+mod column;
+mod course;
 mod error;
 mod find;
+mod heading;
+mod indicator;
+mod kind;
+mod long;
+mod moments;
 mod open;
+mod rows;
 mod stated;
 mod table;
+mod text_table;
+mod unit;
+mod view;
 mod words;
 
 pub use cells::Cells;

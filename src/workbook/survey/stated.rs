@@ -1,10 +1,14 @@
 //! An indicator whose cells a row of the plan states.
 
 use super::cells::Cells;
-use super::find::{indicator, read_moments};
-use super::words;
+use super::indicator::{Named, indicator};
+use super::kind::{Kind, Kinds};
+use super::moments::Timeline;
+use super::rows::{Labels, readings};
+use super::unit::split_unit;
+use super::view::View;
 use crate::reading::Grades;
-use crate::workbook::indicator::{Indicator, Place, Rows};
+use crate::workbook::indicator::{Indicator, Rows};
 use crate::workbook::plan::PlanRow;
 use crate::workbook::reference::{CellRef, Range, ReferenceError};
 
@@ -23,6 +27,9 @@ pub enum StatedError {
     /// Moments must stand beside the readings.
     #[error("the moments {moments} do not stand beside the readings {cells}, row by row")]
     Beside { moments: String, cells: String },
+    /// No row of a long table has the indicator's name.
+    #[error("no row of {names} is named `{name}`; write the indicator's name as it stands there")]
+    Name { names: String, name: String },
     /// The grades cannot be read.
     #[error("{0}")]
     Grades(#[from] crate::reading::scale::GradesError),
@@ -52,32 +59,41 @@ pub fn indicator_at(cells: &Cells, row: &PlanRow) -> Result<Indicator, StatedErr
     };
     let moments = beside(&row.moments)?;
     let names = beside(&row.names)?;
-    let (first, last) = (range.first.row, range.last.row);
-    let mut place = Place {
-        sheet: sheet.name.clone(),
-        column: range.first.column,
-        moments,
-        rows: Rows::Down { first, count: last - first + 1 },
-        header: first.checked_sub(1).map(|row| CellRef { row, column: range.first.column }),
+    let kinds = Kinds::default();
+    let view = View { cells, sheet, kinds: &kinds };
+    let (rows, column) = ((range.first.row, range.last.row), range.first.column);
+    let heading = rows.0.checked_sub(1).map(|row| CellRef { row, column });
+    let (kept, cell) = match names {
+        Some(names) => {
+            let rows: Vec<u32> =
+                (rows.0..=rows.1).filter(|&at| is_named(&cells.cell(sheet, at, names).quote(), row.indicator.trim())).collect();
+            let Some(&first) = rows.first() else {
+                return Err(StatedError::Name { names: row.names.clone(), name: row.indicator.clone() });
+            };
+            (rows, Some(CellRef { row: first, column: names }))
+        }
+        None => (rows_of_readings(view, column, moments, rows), heading),
     };
-    if let Some(column) = names {
-        let wanted = row.indicator.trim();
-        let rows = (first..=last).filter(|&at| {
-            let text = cells.cell(sheet, at, column).quote();
-            text == wanted || words::name_and_unit(&text).0 == wanted
-        });
-        place.rows = Rows::Listed(rows.collect());
-    }
-    let mut read = read_moments(cells, sheet, &place);
-    if let (Ok(moments), Rows::Down { count, .. }) = (&read, &place.rows)
-        && moments.newest_first()
-    {
-        let reversed = (**moments).clone().reversed();
-        place.rows = Rows::Up { first: last, count: *count };
-        read = Ok(std::sync::Arc::new(reversed));
-    }
+    let timeline = Timeline::of(view, moments, kept);
+    let cell = cell.filter(|_| names.is_some() || !matches!(timeline.rows, Rows::Listed(_)));
     let grades = if row.grades.trim().is_empty() { None } else { Some(Grades::parse(&row.grades)?) };
-    let header = place.header.map(|at| cells.cell(sheet, at.row, at.column).quote()).unwrap_or_default();
-    let unit = words::name_and_unit(&header).1;
-    Ok(indicator(cells, sheet, place, (row.indicator.trim().to_owned(), unit), grades.as_ref(), read))
+    // Above part of a column, and in a long table, stands another reading.
+    let unit = heading.filter(|at| names.is_none() && view.kind(at.row, at.column) == Kind::Word);
+    let unit = unit.and_then(|at| split_unit(view.text(at.row, at.column)?).1);
+    let named = Named { name: row.indicator.trim().to_owned(), unit, cell };
+    Ok(indicator(view, column, &timeline, named, grades.as_ref()))
+}
+
+/// The rows of a stated range without those that sum up others. All rows are kept where none has a moment.
+fn rows_of_readings(view: View<'_>, column: u32, moments: Option<u32>, (first, last): (u32, u32)) -> Vec<u32> {
+    match moments {
+        Some(_) => readings(view, Labels::beside(column, moments), (first, last)).rows,
+        None => (first..=last).collect(),
+    }
+}
+
+/// Whether a name in a long table is the wanted one: as it stands, without its unit, or before the heading of its values.
+fn is_named(text: &str, wanted: &str) -> bool {
+    let (text, wanted) = (text.to_lowercase(), wanted.to_lowercase());
+    text == wanted || split_unit(&text).0 == wanted || wanted.strip_prefix(&text).is_some_and(|heading| heading.starts_with(": "))
 }
