@@ -180,7 +180,7 @@ impl<R: Read + Seek> Workbook<R> {
                 moves.insert(part.clone(), free(&base, inner, &mut taken));
             }
             for part in &parts {
-                let bytes = if *part == sheet { donor.sheet(part, &numbers)? } else { straight_lines(donor.package.read(part)?) };
+                let bytes = if *part == sheet { donor.sheet(part, &numbers)? } else { finished(donor.package.read(part)?) };
                 written.push((moves[part].clone(), self.in_our_variant(part, bytes)));
                 let kind = donor.package.content_type(part)?.unwrap_or_default();
                 new_types.push((moves[part].clone(), kind));
@@ -294,15 +294,18 @@ fn strict(text: &str) -> String {
     text
 }
 
-/// A chart whose line series say that their lines are straight; LibreOffice smooths those that say nothing.
-fn straight_lines(bytes: Vec<u8>) -> Vec<u8> {
-    match String::from_utf8(bytes) {
-        Ok(text) if text.contains("<c:lineChart>") && !text.contains("<c:smooth") => {
-            text.replace("</c:ser>", "<c:smooth val=\"0\"/></c:ser>").into_bytes()
-        }
-        Ok(text) => text.into_bytes(),
-        Err(error) => error.into_bytes(),
+/// A part of the donor as it goes into the workbook. The line series of a chart say that their lines are straight, since LibreOffice
+/// smooths those that say nothing; and the brackets fall that kept ranges from being remembered cell by cell.
+fn finished(bytes: Vec<u8>) -> Vec<u8> {
+    let mut text = match String::from_utf8(bytes) {
+        Ok(text) if text.contains("<c:lineChart>") => text,
+        Ok(text) => return text.into_bytes(),
+        Err(error) => return error.into_bytes(),
+    };
+    if !text.contains("<c:smooth") {
+        text = text.replace("</c:ser>", "<c:smooth val=\"0\"/></c:ser>");
     }
+    text.replace("<c:f>(", "<c:f>").replace(")</c:f>", "</c:f>").into_bytes()
 }
 
 /// The content types with an entry for each new part.

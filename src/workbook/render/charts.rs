@@ -7,7 +7,7 @@ use std::collections::BTreeMap;
 
 use rust_xlsxwriter::{
     Chart, ChartAxisDateUnitType, ChartFont, ChartFormat, ChartLegendPosition, ChartLine, ChartMarker, ChartMarkerType,
-    ChartType, Color, Format, Formula, Worksheet,
+    ChartRange, ChartType, Color, Format, Formula, Worksheet,
 };
 
 use super::look::Look;
@@ -15,6 +15,7 @@ use super::{Error, Input, fitting, live, page, serial, wording};
 use crate::reading::moment::MomentKind;
 use crate::reading::{Missing, Value};
 use crate::workbook::indicator::{Judged, Rows};
+use crate::workbook::reference::{CellRef, Range, column_letters, quote_sheet};
 
 /// The most charts that are drawn.
 const MOST_CHARTS: usize = 60;
@@ -53,11 +54,9 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
             }
             let range = judged.indicator.place.range();
             let moments = judged.indicator.place.moments_range();
-            let corners = |range: crate::workbook::Range| {
-                (range.sheet.clone(), range.first.row, range.first.column as u16, range.last.row, range.last.column as u16)
-            };
             match range {
-                Some(range) => draw(judged, corners(range), moments.map(corners)),
+                Some(range) if keep => draw(judged, &remembered(&range), moments.as_ref().map(remembered)),
+                Some(range) => draw(judged, &unremembered(&range), moments.as_ref().map(unremembered)),
                 None => continue,
             }
         } else if keep {
@@ -65,8 +64,8 @@ pub fn sheets(input: &Input, look: &Look) -> Result<(Worksheet, Vec<Worksheet>),
             let column = HELPER_COLUMN + 3 * place as u16;
             write_helpers(&mut sheet, input, look, judged, column)?;
             let last = series.len() as u32 + 1;
-            let name = input.names.charts.clone();
-            draw(judged, (name.clone(), 2, column + 1, last, column + 1), Some((name, 2, column, last, column)))
+            let helpers = |column| ChartRange::new_from_range(&input.names.charts, 2, column, last, column);
+            draw(judged, &helpers(column + 1), Some(helpers(column)))
         } else {
             continue;
         };
@@ -102,10 +101,21 @@ fn can_be_drawn_directly(judged: &Judged) -> bool {
         && indicator.understood.missing.iter().all(|reading| reading.why == Missing::Blank)
 }
 
-/// Sheet, first row, first column, last row, last column.
-type Corners = (String, u32, u16, u32, u16);
+/// A range whose cells are remembered in the chart, so that it can be shown before anything is computed.
+fn remembered(range: &Range) -> ChartRange {
+    let Range { sheet, first, last } = range;
+    ChartRange::new_from_range(sheet, first.row, first.column as u16, last.row, last.column as u16)
+}
 
-fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
+/// A range in brackets, which the writing library takes as it is: a long series is not remembered in the chart cell by cell. The
+/// graft takes the brackets off.
+fn unremembered(range: &Range) -> ChartRange {
+    let Range { sheet, first, last } = range;
+    let cell = |cell: &CellRef| format!("${}${}", column_letters(cell.column), cell.row + 1);
+    ChartRange::new_from_string(&format!("=({}!{}:{})", quote_sheet(sheet), cell(first), cell(last)))
+}
+
+fn draw(judged: &Judged, values: &ChartRange, moments: Option<ChartRange>) -> Chart {
     let series = &judged.indicator.series;
     let mut chart = Chart::new(ChartType::Line);
     let line = ChartLine::new().set_color(INK).set_width(1.25).clone();
@@ -119,9 +129,10 @@ fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
         .set_format(&mut dot)
         .clone();
     let drawn = chart.add_series();
-    drawn.set_values((values.0.as_str(), values.1, values.2, values.3, values.4));
+    let has_moments = moments.is_some();
+    drawn.set_values(values);
     if let Some(moments) = &moments {
-        drawn.set_categories((moments.0.as_str(), moments.1, moments.2, moments.3, moments.4));
+        drawn.set_categories(moments);
     }
     drawn.set_name(fitting(&series.name).as_str()).set_format(ChartFormat::new().set_line(&line)).set_marker(&marker);
     let unit = series.unit.as_ref().map(|unit| format!(" ({unit})")).unwrap_or_default();
@@ -133,7 +144,7 @@ fn draw(judged: &Judged, values: Corners, moments: Option<Corners>) -> Chart {
     chart.set_width(500).set_height(300);
     let axis = chart.x_axis();
     axis.set_font(&font(9));
-    if series.moments.kind() == MomentKind::Date && !series.moments.has_labels() && moments.is_some() {
+    if series.moments.kind() == MomentKind::Date && !series.moments.has_labels() && has_moments {
         axis.set_date_axis(true).set_num_format("yyyy-mm-dd").set_major_unit_date_type(ChartAxisDateUnitType::Months);
         if let Some(unit) = months_between_labels(judged) {
             axis.set_major_unit(unit);
