@@ -48,8 +48,11 @@ pub fn checksum(indicator: &Indicator) -> String {
         hash.update([kind]);
         // Adding nothing makes one zero of the two.
         hash.update((number + 0.0).to_le_bytes());
-        hash.update(series.moments.label(index).as_bytes());
-        hash.update([0]);
+        hash.update(series.moments.axis(index).to_le_bytes());
+        if series.moments.has_labels() {
+            hash.update(series.moments.label(index).as_bytes());
+            hash.update([0]);
+        }
     }
     hash.finalize().iter().take(8).map(|byte| format!("{byte:02x}")).collect()
 }
