@@ -191,12 +191,12 @@ impl Moments {
         for index in 0..self.axis.len() {
             let before = last[blocks.map_or(0, |blocks| blocks.block(index))].replace(index);
             let Some(before) = before else { continue };
-            let (position, label) = (index + 1, self.label(index));
+            let position = index + 1;
             if self.axis[index] < self.axis[before] {
-                return Err(MomentError::OutOfOrder { position, label, before: self.label(before) });
+                return Err(MomentError::OutOfOrder { position, label: self.label(index), before: self.label(before) });
             }
             if self.axis[index] == self.axis[before] && !repeats_allowed {
-                return Err(MomentError::Repeated { position, label });
+                return Err(MomentError::Repeated { position, label: self.label(index) });
             }
         }
         Ok(())
